@@ -1,0 +1,182 @@
+"""Formula text -> tree: a small closed language that is both evaluated and typeset.
+
+Names, real numbers, ``+ - * / **``, brackets and the functions of :data:`FUNCTIONS`; nothing else parses.
+The text is read with Python's own grammar and every node, called name and constant is checked, so that no
+attribute, subscript, string, keyword or unknown call gets through. Both the solver and the sheets evaluate the
+same tree on floats or numpy arrays.
+"""
+
+from __future__ import annotations
+
+import ast
+import operator
+from collections.abc import Callable, Iterator, Mapping
+from dataclasses import dataclass
+
+import numpy as np
+
+from calcpack.errors import FormulaError
+
+
+@dataclass(frozen=True)
+class Number:
+    """A constant; ``text`` is how the author wrote it and how it prints."""
+
+    value: float
+    text: str
+
+
+@dataclass(frozen=True)
+class Symbol:
+    """A name to be replaced by a value."""
+
+    name: str
+
+
+@dataclass(frozen=True)
+class Negative:
+    """Minus in front of a term."""
+
+    operand: Node
+
+
+@dataclass(frozen=True)
+class Binary:
+    """``left operator right`` with operator one of ``+ - * / **``."""
+
+    operator: str
+    left: Node
+    right: Node
+
+
+@dataclass(frozen=True)
+class Call:
+    """A call of one of :data:`FUNCTIONS`."""
+
+    function: str
+    arguments: tuple[Node, ...]
+
+
+Node = Number | Symbol | Negative | Binary | Call
+
+OPERATORS: dict[type, str] = {ast.Add: "+", ast.Sub: "-", ast.Mult: "*", ast.Div: "/", ast.Pow: "**"}
+_APPLY: dict[str, Callable] = {
+    "+": operator.add,
+    "-": operator.sub,
+    "*": operator.mul,
+    "/": operator.truediv,
+    "**": operator.pow,
+}
+
+
+def _sum(values):
+    """Sum over the first axis: the terms of a list operand (arrays of cases stay arrays)."""
+    return np.sum(np.asarray(values), axis=0)
+
+
+# name -> (callable, number of arguments)
+FUNCTIONS: dict[str, tuple[Callable, int]] = {
+    "sqrt": (np.sqrt, 1),
+    "log10": (np.log10, 1),
+    "ln": (np.log, 1),
+    "exp": (np.exp, 1),
+    "sin": (np.sin, 1),
+    "abs": (np.abs, 1),
+    "min": (np.minimum, 2),
+    "max": (np.maximum, 2),
+    "sum": (_sum, 1),
+}
+CONSTANTS = {"pi": np.pi}
+MAX_LENGTH = 400
+
+
+@dataclass(frozen=True)
+class Equation:
+    """``left = right`` as trees. An explicit formula has a bare symbol on the left."""
+
+    text: str
+    left: Node
+    right: Node
+
+    @property
+    def is_explicit(self) -> bool:
+        """True when the left side is one symbol that the right side does not use."""
+        return isinstance(self.left, Symbol) and self.left.name not in set(symbols(self.right))
+
+
+def parse(text: str) -> Equation:
+    """Read ``"h_f = f * (L / D) * (V**2 / (2*g))"``.
+
+    Raises FormulaError naming the text and the part that the language does not know.
+    """
+    if len(text) > MAX_LENGTH:
+        raise FormulaError(f"{text[:40]}...: longer than {MAX_LENGTH} characters")
+    left, equals, right = text.partition("=")
+    if not equals or "=" in right:
+        raise FormulaError(f"{text!r}: a formula is 'left = right' with exactly one '='")
+    return Equation(text, _read(left, text), _read(right, text))
+
+
+def _read(side: str, text: str) -> Node:
+    try:
+        tree = ast.parse(side.strip(), mode="eval").body
+    except (SyntaxError, ValueError, RecursionError, MemoryError) as error:
+        raise FormulaError(f"{text!r}: cannot be read: {side.strip()!r}") from error
+    return _convert(tree, side.strip(), text)
+
+
+def _convert(node: ast.AST, side: str, text: str) -> Node:
+    if isinstance(node, ast.Constant):
+        if type(node.value) not in (int, float):
+            raise FormulaError(f"{text!r}: {node.value!r} is not a number")
+        return Number(float(node.value), ast.get_source_segment(side, node) or repr(node.value))
+    if isinstance(node, ast.Name):
+        if node.id in FUNCTIONS:
+            raise FormulaError(f"{text!r}: function {node.id!r} is used as a symbol")
+        return Symbol(node.id)
+    if isinstance(node, ast.UnaryOp) and isinstance(node.op, ast.USub):
+        return Negative(_convert(node.operand, side, text))
+    if isinstance(node, ast.BinOp) and type(node.op) in OPERATORS:
+        return Binary(OPERATORS[type(node.op)], _convert(node.left, side, text), _convert(node.right, side, text))
+    if isinstance(node, ast.Call):
+        if not isinstance(node.func, ast.Name) or node.func.id not in FUNCTIONS:
+            raise FormulaError(f"{text!r}: only these functions may be called: {', '.join(FUNCTIONS)}")
+        if node.keywords or any(isinstance(argument, ast.Starred) for argument in node.args):
+            raise FormulaError(f"{text!r}: {node.func.id} takes plain arguments only")
+        wanted = FUNCTIONS[node.func.id][1]
+        if len(node.args) != wanted:
+            raise FormulaError(f"{text!r}: {node.func.id} takes {wanted} argument(s), not {len(node.args)}")
+        return Call(node.func.id, tuple(_convert(argument, side, text) for argument in node.args))
+    raise FormulaError(f"{text!r}: {type(node).__name__} is not part of the formula language")
+
+
+def symbols(node: Node) -> Iterator[str]:
+    """Names of the symbols in reading order, repeats included, constants such as pi left out."""
+    match node:
+        case Symbol(name):
+            if name not in CONSTANTS:
+                yield name
+        case Negative(operand):
+            yield from symbols(operand)
+        case Binary(_, left, right):
+            yield from symbols(left)
+            yield from symbols(right)
+        case Call(_, arguments):
+            for argument in arguments:
+                yield from symbols(argument)
+
+
+def evaluate(node: Node, values: Mapping[str, object]):
+    """Value of the tree with ``values`` (floats, numpy arrays, or pint quantities in the dimension tests)."""
+    match node:
+        case Number(value, _):
+            return value
+        case Symbol(name):
+            return values[name] if name in values else CONSTANTS[name]
+        case Negative(operand):
+            return -evaluate(operand, values)
+        case Binary(symbol, left, right):
+            return _APPLY[symbol](evaluate(left, values), evaluate(right, values))
+        case Call(function, arguments):
+            return FUNCTIONS[function][0](*(evaluate(argument, values) for argument in arguments))
+    raise FormulaError(f"{node!r} is not a node of the formula language")

@@ -1,0 +1,367 @@
+"""The frozen model of a project: everything resolved, in SI, every number a Value that knows its origin.
+
+``project.load`` makes it; hydraulics, sheets and drawings read it and never change it.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+
+from calcpack.values import Value
+
+# Kinds of node.
+TANK = "tank"  # free surface at a named level, with an optional gas pressure above it
+OUTLET = "outlet"  # free discharge at an elevation
+JUNCTION = "junction"  # continuity, with an optional demand
+PUMP_PORT = "pump port"  # suction or discharge connection of a pump, at its shaft elevation
+
+
+@dataclass(frozen=True)
+class Document:
+    """Title-block data (ISO 7200 fields) of the package."""
+
+    project: str
+    title: str
+    number: str
+    type: str
+    owner: str
+    revision: str
+    status: str
+    date: str
+    language: str = "en"
+    contract: str = ""
+    location: str = ""
+    department: str = ""
+    classification: str = ""
+
+
+@dataclass(frozen=True)
+class Person:
+    """Someone with a role in the package: originator, checker, approver, responsible engineer."""
+
+    role: str
+    name: str
+    organisation: str = ""
+    licence: str = ""
+
+
+@dataclass(frozen=True)
+class RevisionNote:
+    """One line of the revision history as the project states it."""
+
+    revision: str
+    date: str
+    reason: str
+
+
+@dataclass(frozen=True)
+class SourceDocument:
+    """A document of the project that inputs cite."""
+
+    id: str
+    title: str
+    revision: str = ""
+    date: str = ""
+
+
+@dataclass(frozen=True)
+class Statement:
+    """An assumption, note or exclusion in the user's words; ``status`` open or closed, ``owner`` who closes it."""
+
+    id: str
+    text: str
+    reason: str = ""
+    status: str = ""
+    owner: str = ""
+    covered_by: str = ""
+    place: str = ""
+
+
+@dataclass(frozen=True)
+class Requirement:
+    """What the system must deliver: Values or None where the user states none."""
+
+    flow: Value | None  # flow
+    margin: Value | None  # fraction added to the flow
+    daily_volume: Value | None  # daily_flow
+    running_time: Value | None  # hours per day
+    case: str = ""  # the case at which the design flow is wanted
+
+
+@dataclass(frozen=True)
+class Economy:
+    """Energy figures: tariff per energy (energy_price), currency word, operating days a year."""
+
+    tariff: Value | None
+    currency: str
+    days_per_year: Value | None
+
+
+@dataclass(frozen=True)
+class Site:
+    """``atmospheric_pressure`` is a measured record, else it follows from the elevation."""
+
+    elevation: Value
+    datum: str
+    gravity: Value
+    atmospheric_pressure: Value | None = None
+
+
+@dataclass(frozen=True)
+class LiquidState:
+    """Properties at one named temperature. ``vapour_pressure`` is absolute."""
+
+    name: str
+    temperature: Value
+    density: Value
+    dynamic_viscosity: Value
+    vapour_pressure: Value
+    bulk_modulus: Value | None = None
+    specific_heat: Value | None = None
+
+
+@dataclass(frozen=True)
+class Liquid:
+    """The liquid at each named temperature; ``states`` keeps the order of the input (normal among them)."""
+
+    name: str
+    model: str
+    states: Mapping[str, LiquidState]
+    flags: tuple[str, ...] = ()
+
+
+@dataclass(frozen=True)
+class Node:
+    """A point of the network. ``levels`` (tank) are free-surface elevations by name; ``elevation`` is the pipe's."""
+
+    tag: str
+    kind: str
+    description: str = ""
+    elevation: Value | None = None
+    levels: Mapping[str, Value] | None = None
+    gas_pressure: Value | None = None
+    demand: Value | None = None
+    service: str = ""
+
+
+@dataclass(frozen=True)
+class Fitting:
+    """``count`` items of one type; method 'n_fT' (K = n fT) or 'K', on the velocity head of its line."""
+
+    type: str
+    title: str
+    count: int
+    method: str
+    coefficient: Value
+    full_open_constant: Value | None = None  # check valves: N of v = N / sqrt(rho)
+    tag: str = ""
+
+    @property
+    def is_check_valve(self) -> bool:
+        """True for a fitting that closes against reverse flow."""
+        return "check" in self.type or self.type.startswith("foot_valve")
+
+
+@dataclass(frozen=True)
+class LossState:
+    """Head loss of equipment in one state: law 'quadratic' (head at a flow) or 'fixed' (head whatever the flow)."""
+
+    name: str
+    law: str
+    head: Value
+    flow: Value | None
+
+
+@dataclass(frozen=True)
+class Equipment:
+    """An in-line item with one or more states (clean, dirty)."""
+
+    tag: str
+    type: str
+    description: str
+    states: Mapping[str, LossState]
+
+
+@dataclass(frozen=True)
+class Pipe:
+    """Size of a line. ``bore`` is the user's own inside diameter where given, else OD and wall rule."""
+
+    standard: str
+    size: str
+    schedule: str
+    material: str
+    outside_diameter: Value | None
+    wall: Value | None
+    bore: Value | None = None
+
+
+@dataclass(frozen=True)
+class ProfilePoint:
+    """Pipe axis: chainage along the line from its start, elevation."""
+
+    chainage: Value
+    elevation: Value
+
+
+@dataclass(frozen=True)
+class Line:
+    """A pipe line from node ``start`` to node ``end`` with constant size."""
+
+    tag: str
+    start: str
+    end: str
+    description: str
+    service: str
+    pipe: Pipe
+    length: Value
+    roughness: Mapping[str, Value]
+    fittings: tuple[Fitting, ...]
+    equipment: tuple[str, ...]
+    velocity_minimum: Value | None = None
+    velocity_maximum: Value | None = None
+    rating: Value | None = None  # gauge_pressure
+    friction_factor: Value | None = None  # a given Darcy factor replaces the correlation
+    profile: tuple[ProfilePoint, ...] = ()
+    surge_modulus: Value | None = None  # elastic modulus of the wall
+    surge_restraint: Value | None = None  # restraint factor c1
+
+    @property
+    def check_valve(self) -> Fitting | None:
+        """The line's check valve, if it has one."""
+        return next((fitting for fitting in self.fittings if fitting.is_check_valve), None)
+
+
+@dataclass(frozen=True)
+class PumpCurve:
+    """Maker's points, each column of equal length, ascending flow from the first point."""
+
+    flow: tuple[Value, ...]
+    head: tuple[Value, ...]
+    efficiency: tuple[Value, ...] | None
+    npshr: tuple[Value, ...] | None
+    source: str
+    status: str
+    place: str
+
+
+@dataclass(frozen=True)
+class Motor:
+    """Driver: rated power, efficiency at the duty load."""
+
+    rating: Value
+    efficiency: Value
+    drive_efficiency: Value | None = None
+    margin: Value | None = None  # required ratio of rating to greatest shaft power
+    poles: str = ""
+
+
+@dataclass(frozen=True)
+class Pump:
+    """A pump item. ``suction`` and ``discharge`` are its port nodes."""
+
+    tag: str
+    description: str
+    installed: int
+    duty: int
+    suction: str
+    discharge: str
+    shaft_elevation: Value
+    speed: Value
+    stages: int
+    curve: PumpCurve
+    best_efficiency_flow: Value
+    preferred_low: Value  # fraction of best-efficiency flow
+    preferred_high: Value
+    minimum_flow: Value | None
+    npsh_ratio: Value
+    npsh_margin: Value
+    casing_rating: Value | None
+    flange_rating: Value | None
+    motor: Motor | None
+    rated_flow: Value | None = None
+    type: str = ""
+
+
+@dataclass(frozen=True)
+class System:
+    """The physical system with one case's overrides applied."""
+
+    site: Site
+    liquid: Liquid
+    nodes: Mapping[str, Node]
+    lines: Mapping[str, Line]
+    equipment: Mapping[str, Equipment]
+    pumps: Mapping[str, Pump]
+
+
+@dataclass(frozen=True)
+class Override:
+    """One input that a case sets differently."""
+
+    path: str
+    text: str
+    place: str
+
+
+@dataclass(frozen=True)
+class Case:
+    """One operating case: the system as overridden, and the named state of each part.
+
+    ``levels`` maps tanks to level names, ``roughness`` lines, ``equipment`` items; ``pumps`` maps pumps to the number
+    running. ``purposes`` are words that checks look for: normal, head, flow, npsh, cold, ...
+    """
+
+    id: str
+    title: str
+    system: System
+    temperature: str
+    levels: Mapping[str, str]
+    roughness: Mapping[str, str]
+    equipment: Mapping[str, str]
+    pumps: Mapping[str, int]
+    purposes: tuple[str, ...] = ()
+    overrides: tuple[Override, ...] = ()
+
+    @property
+    def liquid(self) -> LiquidState:
+        """Liquid properties of the case."""
+        return self.system.liquid.states[self.temperature]
+
+
+@dataclass(frozen=True)
+class InputFile:
+    """One file of the folder as read."""
+
+    name: str
+    text: str
+    sha256: str
+
+
+@dataclass(frozen=True)
+class Project:
+    """A whole project. ``units`` is 'SI' or 'US'; ``values`` every input Value in file and line order."""
+
+    folder: str
+    document: Document
+    units: str
+    people: tuple[Person, ...]
+    revisions: tuple[RevisionNote, ...]
+    purpose: str
+    description: tuple[str, ...]
+    requirement: Requirement
+    economy: Economy | None
+    system: System
+    cases: tuple[Case, ...]
+    normal_case: str
+    documents: tuple[SourceDocument, ...]
+    assumptions: tuple[Statement, ...]
+    notes: tuple[Statement, ...]
+    exclusions: tuple[Statement, ...]
+    limits: Mapping[str, Value]
+    values: tuple[Value, ...]
+    files: tuple[InputFile, ...]
+
+    def case(self, case_id: str) -> Case:
+        """The case of that id. Raises KeyError."""
+        return next(case for case in self.cases if case.id == case_id)
