@@ -101,6 +101,7 @@ UNITS: dict[str, Unit] = {
         Unit("h", "hour", 3600.0),
         Unit("d", "day", 86400.0),
         Unit("K", "K", 1.0),
+        Unit("°R", "delta_degF", 5 / 9),
         Unit("°C", "degC", 1.0, 273.15),
         Unit("°F", "degF", 5 / 9, 459.67 * 5 / 9),
         Unit("rad/s", "rad/s", 1.0),
@@ -113,6 +114,14 @@ UNITS: dict[str, Unit] = {
         Unit("ft/100 ft", "ft/(100*ft)", 0.01),
         Unit("s²/m⁵", "s**2/m**5", 1.0),
         Unit("s²/ft⁵", "s**2/ft**5", FOOT**-5),
+        Unit("s/m²", "s/m**2", 1.0),
+        Unit("s/ft²", "s/ft**2", FOOT**-2),
+        Unit("s/m³", "s/m**3", 1.0),
+        Unit("s/ft³", "s/ft**3", FOOT**-3),
+        Unit("s²/m⁶", "s**2/m**6", 1.0),
+        Unit("s²/ft⁶", "s**2/ft**6", FOOT**-6),
+        Unit("s³/m⁹", "s**3/m**9", 1.0),
+        Unit("s³/ft⁹", "s**3/ft**9", FOOT**-9),
     )
 }
 
@@ -186,10 +195,15 @@ KINDS: dict[str, Kind] = {
         _kind("hours", "duration", "s", "s", "h"),
         _kind("days", "duration", "s", "s", "d"),
         _kind("temperature", "temperature", "K", "K", "°C|°F"),
+        _kind("temperature_difference", "temperature difference", "K", "K|°R"),
         _kind("rotational_speed", "rotational speed", "rad/s", "rad/s", "rpm"),
         _kind("specific_heat", "specific heat", "J/(kg·K)", "J/(kg·K)|ft·lbf/(slug·°R)", "kJ/(kg·K)|Btu/(lb·°F)"),
         _kind("gradient", "friction gradient", "", "", "m/100 m|ft/100 ft"),
         _kind("quadratic_coefficient", "quadratic loss coefficient", "s²/m⁵", "s²/m⁵|s²/ft⁵"),
+        _kind("head_slope", "head over flow", "s/m²", "s/m²|s/ft²"),
+        _kind("efficiency_slope", "efficiency over flow", "s/m³", "s/m³|s/ft³"),
+        _kind("efficiency_square", "efficiency over flow squared", "s²/m⁶", "s²/m⁶|s²/ft⁶"),
+        _kind("efficiency_cube", "efficiency over flow cubed", "s³/m⁹", "s³/m⁹|s³/ft⁹"),
         _kind("specific_speed", "specific speed (rpm, m³/s, m)", "", ""),
     )
 }

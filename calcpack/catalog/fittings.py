@@ -50,12 +50,13 @@ def fitting(type_: str, dn: int | None = None) -> FittingRow:
     if row["method"] == GIVEN:
         raise CatalogError(f'"{row["type"]}" has no general coefficient', row["note"])
     table = load_table(_TABLE)
+    kind = "dimensionless" if row["method"] == N_FT else "loss_coefficient"
     label = row["title"] if len(rows) == 1 else f"{row['title']}, {_band(row)}"
     return FittingRow(
         type=row["type"],
         title=row["title"],
         method=row["method"],
-        coefficient=table.value(row, "coefficient", "dimensionless" if row["method"] == N_FT else "loss_coefficient", label),
+        coefficient=table.value(row, "coefficient", kind, label),
         full_open_constant=table.optional(row, "full_open_constant", "dimensionless", label),
     )
 

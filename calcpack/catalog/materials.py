@@ -22,7 +22,9 @@ def roughness(material: str, condition: str) -> CatalogValue:
         if row["condition"] == plain(condition):
             return table.value(row, "roughness", "roughness", f"{row['title']}, {row['condition']}")
     known = ", ".join(row["condition"] for row in rows)
-    raise CatalogError(f'no "{condition}" roughness for {rows[0]["title"]}', f"known: {known}; or give a value with its source")
+    raise CatalogError(
+        f'no "{condition}" roughness for {rows[0]["title"]}', f"known: {known}; or give a value with its source"
+    )
 
 
 def materials() -> list[str]:

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from calcpack.catalog.errors import CatalogError
 from calcpack.catalog.names import plain, unknown
-from calcpack.catalog.table import CatalogValue, load_table
+from calcpack.catalog.table import CatalogValue, Row, load_table
 
 _SERIES = {"SI": "motor_ratings_iec", "US": "motor_ratings_nema"}
 
@@ -24,7 +24,9 @@ def next_motor_rating(power_W: float, system: str) -> CatalogValue:
         rating = table.value(row, "rating", "power", f"{row['rating']} {unit}")
         if rating.value >= power_W:
             return rating
-    raise CatalogError(f"{power_W:g} W is above the largest catalogued motor, {rating.row}", "state the rating with its source")
+    raise CatalogError(
+        f"{power_W:g} W is above the largest catalogued motor, {rating.row}", "state the rating with its source"
+    )
 
 
 def motor_margin(basis: str, rating_W: float) -> CatalogValue:
@@ -36,11 +38,9 @@ def motor_margin(basis: str, rating_W: float) -> CatalogValue:
     rows = [row for row in table.rows if row["basis"] == plain(basis)]
     if not rows:
         raise unknown("basis of motor margin", basis, (row["basis"] for row in table.rows))
-    for row in rows:
-        limit = table.optional(row, "rating_max", "power", row["title"])
-        if limit is None or rating_W <= limit.value:
-            return table.value(row, "margin", "ratio", row["title"])
-    raise AssertionError(f"table motor_margins: {basis} has no open last row")
+    limits = [table.optional(row, "rating_max", "power", row["title"]) for row in rows]
+    row = next(row for row, limit in zip(rows, limits, strict=True) if limit is None or rating_W <= limit.value)
+    return table.value(row, "margin", "ratio", row["title"])
 
 
 def motor_efficiency(rating_W: float, efficiency_class: str, poles: int, frequency_Hz: int) -> CatalogValue:
@@ -53,13 +53,17 @@ def motor_efficiency(rating_W: float, efficiency_class: str, poles: int, frequen
     rows = [row for row in table.rows if (row["efficiency_class"], row["poles"], row["frequency"]) == wanted]
     if not rows:
         known = dict.fromkeys(_motor(row) for row in table.rows)
-        raise CatalogError(f"no efficiencies for {wanted[0]}, {poles} poles, {frequency_Hz} Hz", f"known: {'; '.join(known)}")
+        raise CatalogError(
+            f"no efficiencies for {wanted[0]}, {poles} poles, {frequency_Hz} Hz", f"known: {'; '.join(known)}"
+        )
     for row in rows:
         if abs(table.value(row, "rating", "power", "").value - rating_W) <= 1e-9 * rating_W:
             return table.value(row, "efficiency", "efficiency", f"{_motor(row)}, {row['rating']} kW")
     known = ", ".join(row["rating"] for row in rows)
-    raise CatalogError(f"no efficiency for a rating of {rating_W / 1000:g} kW", f"kW known for {_motor(rows[0])}: {known}")
+    raise CatalogError(
+        f"no efficiency for a rating of {rating_W / 1000:g} kW", f"kW known for {_motor(rows[0])}: {known}"
+    )
 
 
-def _motor(row) -> str:
+def _motor(row: Row) -> str:
     return f"{row['efficiency_class']}, {row['poles']} poles, {row['frequency']} Hz"

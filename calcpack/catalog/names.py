@@ -16,6 +16,8 @@ def plain(name: object) -> str:
 def unknown(what: str, name: object, known: Iterable[str]) -> CatalogError:
     """The error for a ``name`` that is not among ``known``; its hint gives the nearest names, else all."""
     names = sorted(set(known))
-    near = get_close_matches(plain(name), names, n=4, cutoff=0.5)
+    wanted = plain(name)
+    near = [known_name for known_name in names if wanted and wanted in known_name]
+    near = near or get_close_matches(wanted, names, n=4, cutoff=0.5)
     hint = f"nearest: {', '.join(near)}" if near else f"known: {', '.join(names)}"
     return CatalogError(f'no {what} "{name}"', hint)

@@ -90,7 +90,10 @@ def pipe(standard: str, size: object, schedule: object) -> PipeSize:
 
 
 def candidates(standard: str, schedule: object) -> list[PipeSize]:
-    """All sizes of one schedule, ratio or type, in ascending order; raises :class:`CatalogError` when there are none."""
+    """All sizes of one schedule, ratio or type, in ascending order.
+
+    Raises :class:`CatalogError` when the standard has none.
+    """
     entry = _standard(standard)
     table = load_table(entry.table)
     wanted = _class(entry, schedule)
@@ -102,8 +105,9 @@ def candidates(standard: str, schedule: object) -> list[PipeSize]:
 
 
 def _standard(name: str) -> _Standard:
-    words = str(name).upper().split()
-    key = "".join(word for word in words if word not in ("ASME", "ASTM", "ISO"))
+    key = "".join(str(name).upper().split())
+    for body in ("ASME", "ASTM", "ISO"):
+        key = key.removeprefix(body)
     if key not in _STANDARDS:
         raise CatalogError(f'no pipe table for the standard "{name}"', f"known: {', '.join(standards())}")
     return _STANDARDS[key]

@@ -1,9 +1,10 @@
 """Liquid water by the IAPWS formulations.
 
 Density, specific heat and speed of sound: IAPWS-IF97 region 1. Vapour pressure: its saturation line (region 4).
-Viscosity: the 2008 formulation without critical enhancement, as that formulation allows for industrial use.
+Viscosity: the 2008 formulation without its critical enhancement, which is negligible in this range.
 Bulk modulus: the isentropic one, K = rho w^2 with the speed of sound w, because pressure waves are isentropic.
-Accuracy: at 25 C and 0.1 MPa the IF97 speed of sound is 0.10 % above the IAPWS value for that state, so K is 0.2 % high.
+Accuracy: at 25 C and 0.1 MPa the IF97 speed of sound is 0.10 % above the value that IAPWS publishes for that state
+(SR6-08, table 8), so K is 0.2 % high there.
 
 The equations of region 1 are called directly. The library's state object chooses the phase itself and turns to steam
 when a saturated state differs from the saturation line by the last bit of a float.
@@ -12,13 +13,13 @@ when a saturated state differs from the saturation line by the last bit of a flo
 from __future__ import annotations
 
 from dataclasses import dataclass
-from functools import cache
+from functools import lru_cache
 
 from calcpack.catalog.errors import CatalogError
 from calcpack.catalog.sources import source
 from calcpack.catalog.table import CatalogValue
 
-LOWEST_TEMPERATURE = 273.15  # K
+LOWEST_TEMPERATURE = 273.15  # K, 0 C
 HIGHEST_TEMPERATURE = 623.15  # K, upper end of region 1
 HIGHEST_PRESSURE = 100e6  # Pa, upper end of region 1
 _MPA = 1e6
@@ -36,38 +37,38 @@ class WaterProperties:
     bulk_modulus: CatalogValue
 
 
-@cache
+@lru_cache(maxsize=4096)
 def water(temperature_K: float, pressure_Pa: float = 101325.0) -> WaterProperties:
     """Properties of liquid water at ``temperature_K`` and absolute ``pressure_Pa``.
 
     Raises :class:`CatalogError` below 0 C, above 350 C, above 100 MPa and where the liquid would be steam.
     """
+    celsius = temperature_K - LOWEST_TEMPERATURE
     if not LOWEST_TEMPERATURE <= temperature_K <= HIGHEST_TEMPERATURE:
         raise CatalogError(
-            f"water at {temperature_K - 273.15:.2f} C is outside 0 C to 350 C",
-            "state the properties of the liquid with their source",
+            f"water at {celsius:.2f} C is outside 0 C to 350 C", "state the properties of the liquid with their source"
         )
     # Imported here: the library takes about a second to load and few commands need it.
     from iapws import _Viscosity
     from iapws.iapws97 import _PSat_T, _Region1
 
-    saturation_Pa = _PSat_T(temperature_K) * _MPA
+    saturation_Pa = float(_PSat_T(temperature_K)) * _MPA
+    on_line = f"saturation line at {celsius:.2f} C"
+    at_state = f"liquid water at {celsius:.2f} C and {pressure_Pa / 1000:.3f} kPa absolute"
     if not saturation_Pa <= pressure_Pa <= HIGHEST_PRESSURE:
         raise CatalogError(
-            f"water at {temperature_K - 273.15:.2f} C and {pressure_Pa / 1000:.3f} kPa absolute is not a liquid of IAPWS-IF97",
+            f"there is no {at_state}",
             f"the pressure must lie between the vapour pressure, {saturation_Pa / 1000:.3f} kPa, and 100 MPa",
         )
     state = _Region1(temperature_K, pressure_Pa / _MPA)
     density = 1 / float(state["v"])
-    at_state = f"liquid water at {temperature_K - 273.15:.2f} C and {pressure_Pa / 1000:.3f} kPa absolute"
-    on_line = f"saturation line at {temperature_K - 273.15:.2f} C"
     return WaterProperties(
         density=_value(density, "density", at_state, "IAPWS-IF97", "region 1"),
         dynamic_viscosity=_value(
             float(_Viscosity(density, temperature_K)), "dynamic_viscosity", at_state, "IAPWS-VISC",
             "without critical enhancement",
         ),
-        vapour_pressure=_value(float(saturation_Pa), "absolute_pressure", on_line, "IAPWS-IF97", "region 4"),
+        vapour_pressure=_value(saturation_Pa, "absolute_pressure", on_line, "IAPWS-IF97", "region 4"),
         specific_heat=_value(1000 * float(state["cp"]), "specific_heat", at_state, "IAPWS-IF97", "region 1"),
         bulk_modulus=_value(
             density * float(state["w"]) ** 2, "bulk_modulus", at_state, "IAPWS-IF97",

@@ -9,9 +9,12 @@ same tree on floats or numpy arrays.
 from __future__ import annotations
 
 import ast
+import math
 import operator
+import re
 from collections.abc import Callable, Iterator, Mapping
 from dataclasses import dataclass
+from functools import reduce
 
 import numpy as np
 
@@ -60,22 +63,25 @@ class Call:
 Node = Number | Symbol | Negative | Binary | Call
 
 OPERATORS: dict[type, str] = {ast.Add: "+", ast.Sub: "-", ast.Mult: "*", ast.Div: "/", ast.Pow: "**"}
+
+
+def _power(base, exponent):
+    """``base ** exponent``; a root of a negative number has no value (Python alone would turn complex)."""
+    result = base**exponent
+    return math.nan if isinstance(result, complex) else result
+
+
 _APPLY: dict[str, Callable] = {
     "+": operator.add,
     "-": operator.sub,
     "*": operator.mul,
     "/": operator.truediv,
-    "**": operator.pow,
+    "**": _power,
 }
 
 
-def _sum(values):
-    """Sum over the first axis: the terms of a list operand (arrays of cases stay arrays)."""
-    return np.sum(np.asarray(values), axis=0)
-
-
-# name -> (callable, number of arguments)
-FUNCTIONS: dict[str, tuple[Callable, int]] = {
+# name -> (callable, number of arguments); ``sum`` runs over list operands and is evaluated by sum_terms
+FUNCTIONS: dict[str, tuple[Callable | None, int]] = {
     "sqrt": (np.sqrt, 1),
     "log10": (np.log10, 1),
     "ln": (np.log, 1),
@@ -84,10 +90,11 @@ FUNCTIONS: dict[str, tuple[Callable, int]] = {
     "abs": (np.abs, 1),
     "min": (np.minimum, 2),
     "max": (np.maximum, 2),
-    "sum": (_sum, 1),
+    "sum": (None, 1),
 }
-CONSTANTS = {"pi": np.pi}
+CONSTANTS = {"pi": math.pi}
 MAX_LENGTH = 400
+_DECIMAL = re.compile(r"(?:[0-9]+\.?[0-9]*|\.[0-9]+)(?:[eE][-+]?[0-9]+)?")
 
 
 @dataclass(frozen=True)
@@ -111,6 +118,8 @@ def parse(text: str) -> Equation:
     """
     if len(text) > MAX_LENGTH:
         raise FormulaError(f"{text[:40]}...: longer than {MAX_LENGTH} characters")
+    if not text.isascii() or "#" in text:
+        raise FormulaError(f"{text!r}: a formula is plain ASCII without remarks; Greek letters are named (rho, eta)")
     left, equals, right = text.partition("=")
     if not equals or "=" in right:
         raise FormulaError(f"{text!r}: a formula is 'left = right' with exactly one '='")
@@ -127,9 +136,10 @@ def _read(side: str, text: str) -> Node:
 
 def _convert(node: ast.AST, side: str, text: str) -> Node:
     if isinstance(node, ast.Constant):
-        if type(node.value) not in (int, float):
-            raise FormulaError(f"{text!r}: {node.value!r} is not a number")
-        return Number(float(node.value), ast.get_source_segment(side, node) or repr(node.value))
+        written = ast.get_source_segment(side, node) or ""
+        if not _DECIMAL.fullmatch(written) or not math.isfinite(float(written)):
+            raise FormulaError(f"{text!r}: {written} is not a decimal number")
+        return Number(float(written), written)
     if isinstance(node, ast.Name):
         if node.id in FUNCTIONS:
             raise FormulaError(f"{text!r}: function {node.id!r} is used as a symbol")
@@ -166,8 +176,26 @@ def symbols(node: Node) -> Iterator[str]:
                 yield from symbols(argument)
 
 
+def summed_terms(node: Node) -> Iterator[Node]:
+    """The terms that stand inside ``sum``."""
+    match node:
+        case Call("sum", (term,)):
+            yield term
+        case Negative(operand):
+            yield from summed_terms(operand)
+        case Binary(_, left, right):
+            yield from summed_terms(left)
+            yield from summed_terms(right)
+        case Call(_, arguments):
+            for argument in arguments:
+                yield from summed_terms(argument)
+
+
 def evaluate(node: Node, values: Mapping[str, object]):
-    """Value of the tree with ``values`` (floats, numpy arrays, or pint quantities in the dimension tests)."""
+    """Value of the tree with ``values``: floats or arrays that broadcast; a list operand is a list or tuple of them.
+
+    Python floats follow Python (a division by zero raises ZeroDivisionError), arrays follow numpy.
+    """
     match node:
         case Number(value, _):
             return value
@@ -177,6 +205,22 @@ def evaluate(node: Node, values: Mapping[str, object]):
             return -evaluate(operand, values)
         case Binary(symbol, left, right):
             return _APPLY[symbol](evaluate(left, values), evaluate(right, values))
+        case Call("sum", (term,)):
+            return sum_terms(term, values)
         case Call(function, arguments):
             return FUNCTIONS[function][0](*(evaluate(argument, values) for argument in arguments))
     raise FormulaError(f"{node!r} is not a node of the formula language")
+
+
+def sum_terms(term: Node, values: Mapping[str, object]):
+    """Sum of ``term`` over the entries of its list operands, taken side by side; 0 for empty lists.
+
+    Raises FormulaError when there is no list operand or their lengths differ.
+    """
+    lists = {name: values[name] for name in symbols(term) if isinstance(values[name], (list, tuple))}
+    lengths = {name: len(entries) for name, entries in lists.items()}
+    if not lists or len(set(lengths.values())) != 1:
+        raise FormulaError(f"sum: needs lists of one length, got {lengths or 'no list'}")
+    rows = [dict(zip(lists, row, strict=True)) for row in zip(*lists.values(), strict=True)]
+    terms = [evaluate(term, {**values, **row}) for row in rows]
+    return reduce(operator.add, terms) if terms else 0.0

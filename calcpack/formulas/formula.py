@@ -2,12 +2,14 @@
 
 from __future__ import annotations
 
+from collections import Counter
 from collections.abc import Mapping
 from dataclasses import dataclass, field
+from itertools import chain
 
 from calcpack.errors import FormulaError
-from calcpack.formulas.expression import Equation, Node, Symbol, evaluate, parse, symbols
-from calcpack.quantities import KINDS, UNITS
+from calcpack.formulas.expression import Equation, Node, Symbol, evaluate, parse, summed_terms, symbols
+from calcpack.quantities import KINDS, UNITS, Unit
 
 LIST = "[]"
 
@@ -27,7 +29,7 @@ class Range:
         return (self.low is None or value >= self.low) and (self.high is None or value <= self.high)
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, eq=False)
 class Formula:
     """One equation with its symbols, source and range.
 
@@ -73,15 +75,23 @@ class Formula:
         return bool(self.units)
 
     def evaluate(self, **values):
-        """Result in SI from SI floats or numpy arrays. Raises FormulaError for missing or unknown symbols."""
+        """Result in SI from SI floats or numpy arrays; a list operand is a list or tuple.
+
+        Raises FormulaError for missing or unknown symbols, for floats without a result (division by zero), and when
+        the formula is implicit.
+        """
+        if self.unknown:
+            raise FormulaError(f"{self.id}: is solved for {self.unknown}, not evaluated")
         self._check_names(values, self.operands)
-        if not self.is_empirical:
-            return evaluate(self.equation.right, values)
-        demanded = {name: UNITS[self.units.get(name, "")].from_si(value) for name, value in values.items()}
-        return UNITS[self.units.get(self.result, "")].to_si(evaluate(self.equation.right, demanded))
+        try:
+            result = evaluate(self.equation.right, self._in_own_units(values))
+        except (ZeroDivisionError, OverflowError) as error:
+            given = ", ".join(f"{name} = {value!r}" for name, value in values.items())
+            raise FormulaError(f"{self.id}: no result for {given} (SI)") from error
+        return UNITS[self.units[self.result]].to_si(result) if self.is_empirical else result
 
     def evaluate_as_printed(self, values: Mapping[str, object]):
-        """Result from numbers that are already in the units of the printed line (the hand-check)."""
+        """Right side from numbers that are already in the units of the printed line (the hand-check)."""
         return evaluate(self.equation.right, values)
 
     def residual(self, **values) -> float:
@@ -92,13 +102,24 @@ class Formula:
 
     def outside_range(self, **values) -> tuple[Range, ...]:
         """The declared ranges that the SI ``values`` (result included) leave."""
-        if self.is_empirical:
-            values = {name: UNITS[self.units.get(name, "")].from_si(value) for name, value in values.items()}
+        values = self._in_own_units(values)
         return tuple(limits for limits in self.valid if not limits.holds(values))
+
+    def _in_own_units(self, values: Mapping[str, object]) -> Mapping[str, object]:
+        """SI values in the units that an empirical formula demands; unchanged for every other formula."""
+        if not self.is_empirical:
+            return values
+        return {name: _from_si(UNITS[self.units[name]], value) for name, value in values.items()}
 
     def _check_names(self, values: Mapping[str, object], wanted: tuple[str, ...]) -> None:
         if set(values) != set(wanted):
             raise FormulaError(f"{self.id}: needs {', '.join(wanted)}; got {', '.join(values) or 'nothing'}")
+
+
+def _from_si(unit: Unit, value):
+    if isinstance(value, (list, tuple)):
+        return [unit.from_si(one) for one in value]
+    return unit.from_si(value)
 
 
 FORMULAS: dict[str, Formula] = {}
@@ -120,7 +141,8 @@ def formula(
     """Declare a formula and enter it in :data:`FORMULAS`.
 
     Raises FormulaError at import for a duplicate id, a missing source, a symbol without kind, a kind without symbol,
-    an unknown kind or unit, or an implicit equation without ``unknown``.
+    an unknown kind or unit, a list operand outside ``sum``, units for some symbols only, or an implicit equation
+    without ``unknown``.
     """
     equation = parse(text)
     names = set(symbols(equation.left)) | set(symbols(equation.right))
@@ -136,7 +158,10 @@ def formula(
     for name, unit in (units or {}).items():
         if name not in kinds or unit not in UNITS:
             raise FormulaError(f"{id}: units: {name} = {unit!r} is not known")
-    if not unknown and not equation.is_explicit:
+    if units and set(units) != names:
+        raise FormulaError(f"{id}: units: every symbol needs one; without: {', '.join(sorted(names - set(units)))}")
+    _check_lists(id, equation, {name for name, kind in kinds.items() if kind.endswith(LIST)})
+    if not unknown and not (equation.is_explicit and equation.left.name in kinds):
         raise FormulaError(f"{id}: an implicit equation names its unknown")
     if unknown and unknown not in names:
         raise FormulaError(f"{id}: the unknown {unknown!r} is not in the equation")
@@ -149,3 +174,12 @@ def formula(
     made = Formula(id, title, equation, dict(kinds), source, locator, tuple(ranges), note, dict(units or {}), unknown)
     FORMULAS[id] = made
     return made
+
+
+def _check_lists(id: str, equation: Equation, lists: set[str]) -> None:
+    terms = [list(symbols(term)) for side in (equation.left, equation.right) for term in summed_terms(side)]
+    if any(not lists & set(term) for term in terms):
+        raise FormulaError(f"{id}: a sum without a list operand")
+    outside = Counter([*symbols(equation.left), *symbols(equation.right)]) - Counter(chain.from_iterable(terms))
+    if stray := lists & set(outside):
+        raise FormulaError(f"{id}: list operand outside a sum: {', '.join(sorted(stray))}")

@@ -154,17 +154,19 @@ class Ledger:
 
     def check(
         self, entry_id: str, title: str, *, value: Entry, limit: Entry, comparison: str, margin: Entry, verdict: str,
-        source: str, locator: str = "", case: str = "", note: str = "", warning: str = "",
+        citation: Citation | None = None, note: str = "", warning: str = "",
     ) -> Entry:
-        """Book a criterion: ``value comparison limit`` (comparison '≤' or '≥') with its margin and verdict."""
+        """Book a criterion: ``value comparison limit`` (comparison '≤' or '≥') with its margin and verdict.
+
+        The source is the limit's own unless ``citation`` says otherwise.
+        """
         if verdict not in origin.VERDICTS:
             raise LedgerError(f"{entry_id}: {verdict!r} is not a verdict")
         return self._book(
             Entry(
                 entry_id, title, value.symbol, margin.kind, margin.value, origin.CHECK,
                 operands={"value": value.id, "limit": limit.id, "margin": margin.id}, comparison=comparison,
-                citation=Citation(source, locator), case=case or value.case, note=note, verdict=verdict,
-                warning=warning,
+                citation=citation or limit.citation, case=value.case, note=note, verdict=verdict, warning=warning,
             )
         )
 

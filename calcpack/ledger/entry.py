@@ -19,12 +19,12 @@ ORIGINS = (GIVEN, ASSUMED, LOOKED_UP, APPLIED, SOLVED, CHOSEN, SERIES, CHECK)
 
 # Verdicts of a check; the wording is the same everywhere.
 MET = "criterion met"
-MET_IN_BAND = "criterion met, inside the warning band"
+MET_WITH_WARNING = "criterion met, with a warning"
 NOT_MET = "criterion not met"
 NOT_CHECKED = "not checked"
 OUT_OF_RANGE = "method out of range"
 REFER = "refer to a specialist"
-VERDICTS = (MET, MET_IN_BAND, NOT_MET, NOT_CHECKED, OUT_OF_RANGE, REFER)
+VERDICTS = (MET, MET_WITH_WARNING, NOT_MET, NOT_CHECKED, OUT_OF_RANGE, REFER)
 
 OperandIds = str | tuple[str, ...]
 

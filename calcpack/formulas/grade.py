@@ -1,0 +1,33 @@
+"""Grade lines: total head along a line, hydraulic grade, margin over the pipe axis."""
+
+from calcpack.formulas.formula import formula
+
+HEAD_AFTER = formula(
+    "grade.head_after", "Total head after a line", "H_2 = H_1 - h_L",
+    H_2="head", H_1="head", h_L="head",
+    source="BERNOULLI", note="loss positive in flow direction",
+)
+
+HEAD_AFTER_LINES = formula(
+    "grade.head_after_lines", "Total head after the lines", "H_2 = H_1 - sum(h_L)",
+    H_2="head", H_1="elevation", h_L="head[]",
+    source="BERNOULLI", note="losses positive in flow direction",
+)
+
+HEAD_ALONG = formula(
+    "grade.head_along", "Total head along a line", "H_x = H_1 - h_L * (x / L)",
+    H_x="head", H_1="head", h_L="head", x="length", L="length",
+    source="BERNOULLI", locator="loss spread evenly over the length",
+)
+
+HYDRAULIC_GRADE = formula(
+    "grade.hydraulic_grade", "Hydraulic grade", "z_h = H - h_v",
+    z_h="elevation", H="head", h_v="head",
+    source="BERNOULLI",
+)
+
+AXIS_MARGIN = formula(
+    "grade.axis_margin", "Hydraulic grade above the pipe axis", "m = z_h - z",
+    m="head", z_h="elevation", z="elevation",
+    source="ARITHMETIC", note="below zero the pressure is below atmospheric",
+)

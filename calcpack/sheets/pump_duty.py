@@ -1,0 +1,154 @@
+"""Pump duty: where pump and system balance in every case, and how the duty lies on the curve."""
+
+from __future__ import annotations
+
+from calcpack.formulas import pump as formulas
+from calcpack.formulas.criteria import deviation
+from calcpack.ledger import Entry
+from calcpack.project.model import Case, Pump
+from calcpack.sheets.content import Block, Column, Derivation, Prose, Ref, Row, Section, Sheet, Table, Verdicts
+from calcpack.sheets.criteria import AT_LEAST, AT_MOST, house_limit, judge
+from calcpack.sheets.flow_basis import required_flow
+from calcpack.sheets.job import Job, case_label
+from calcpack.sheets.pump_curve import value_at
+from calcpack.values import CONFIRMED, LOOKED_UP, Value
+
+
+def fill(job: Job) -> Sheet:
+    """Book flow, head, efficiency, NPSHR and position of every pump in every case, and the criteria on them."""
+    sections = []
+    for pump in job.project.system.pumps.values():
+        cases = [case for case in job.cases if f"{pump.tag}/H_sys@{case.id}" in job.ledger]
+        duties = [case for case in cases if _book(job, case, pump)]
+        if duties:
+            sections.append(_section(job, pump, duties, _judge(job, pump, duties)))
+    if not sections:
+        return Sheet("pump_duty", "Pump duty", omitted="no pump has a duty point in any case")
+    return Sheet("pump_duty", "Pump duty", tuple(sections))
+
+
+def _book(job: Job, case: Case, pump: Pump) -> bool:
+    tag, duty = pump.tag, job.solved(case).pumps[pump.tag]
+    fit = job.fits[tag]
+    if not duty.running or not fit.head.flow_min <= duty.flow_each <= fit.head.flow_max or duty.flow_each <= 0:
+        return False
+    flow = job.ledger.found(
+        f"{tag}/Q@{case.id}", duty.flow, "Q", f"{tag}: flow of the running units", "flow", source="CONTINUITY",
+        locator="network solution", residual=job.solved(case).convergence.continuity, case=case.id,
+    )
+    each = flow
+    if duty.running > 1:
+        number = Value(float(duty.running), "count", str(duty.running), source="case definition", status=CONFIRMED)
+        running = job.input(f"{tag}/i@{case.id}", number, "i", f"{tag}: units running", case)
+        each = job.ledger.apply(f"{tag}/Q_1@{case.id}", formulas.FLOW_PER_PUMP, case=case.id, Q=flow, i=running)
+    else:
+        each = job.ledger.found(
+            f"{tag}/Q_1@{case.id}", duty.flow_each, "Q_1", f"{tag}: flow of one unit", "flow", source="CONTINUITY",
+            locator="one unit runs", residual=0.0, case=case.id, operands={"Q": flow.id},
+        )
+    best = job.ledger[f"{tag}/Q_BEP"]
+    value_at(job, pump, "H", each, case.id, f"{tag}/H@{case.id}")
+    if fit.efficiency is not None:
+        value_at(job, pump, "eta", each, case.id, f"{tag}/eta@{case.id}")
+    if fit.npshr is not None:
+        value_at(job, pump, "NPSHR", each, case.id, f"{tag}/NPSHR@{case.id}")
+    job.ledger.apply(f"{tag}/r@{case.id}", formulas.PERCENT_BEP, case=case.id, Q=each, Q_BEP=best)
+    job.ledger.apply(
+        f"{tag}/closure@{case.id}", deviation("head"), case=case.id, symbol="d_H",
+        title="Head of the pump against head of the system", x_2=f"{tag}/H@{case.id}", x_1=f"{tag}/H_sys@{case.id}",
+    )
+    return True
+
+
+def _judge(job: Job, pump: Pump, cases: list[Case]) -> tuple[str, ...]:
+    tag, ledger = pump.tag, job.ledger
+    flows = [ledger[f"{tag}/Q@{case.id}"] for case in cases]
+    each = [ledger[f"{tag}/Q_1@{case.id}"] for case in cases]
+    ratios = [ledger[f"{tag}/r@{case.id}"] for case in cases]
+    checks = [*_capacity(job, pump, flows)]
+    last = ledger[f"{tag}/Q_{len(pump.curve.flow)}"]
+    near_end = house_limit(job, "curve_end_band", "fraction", "5 %", 0.05, "End of curve: warning band")
+    checks.append(judge(job, f"end-of-curve/{tag}", f"{tag}: flow within the curve data", each, last, AT_MOST,
+                        band=near_end))
+    low = job.input(f"{tag}/r_low", pump.preferred_low, "r_low", f"{tag}: preferred region, lower end")
+    high = job.input(f"{tag}/r_high", pump.preferred_high, "r_high", f"{tag}: preferred region, upper end")
+    checks.append(judge(job, f"preferred-low/{tag}", f"{tag}: preferred region, lower end", ratios, low, AT_LEAST))
+    checks.append(judge(job, f"preferred-high/{tag}", f"{tag}: preferred region, upper end", ratios, high, AT_MOST))
+    if pump.minimum_flow is not None:
+        least = job.input(f"{tag}/Q_min", pump.minimum_flow, "Q_min", f"{tag}: minimum continuous flow")
+        band = house_limit(job, "minimum_flow_band", "fraction", "10 %", 0.1, "Minimum flow: warning band")
+        checks.append(judge(job, f"minimum-flow/{tag}", f"{tag}: minimum continuous flow", each, least, AT_LEAST,
+                            band=band))
+    checks.append(_curve_shape(job, pump))
+    return tuple(check.id for check in checks)
+
+
+def _capacity(job: Job, pump: Pump, flows: list[Entry]) -> list[Entry]:
+    tag, ledger, requirement = pump.tag, job.ledger, job.project.requirement
+    required = required_flow(job)
+    if required is None or len(job.project.system.pumps) > 1:
+        return []  # with several pump items the requirement is on the system, not on one of them
+    band = house_limit(job, "capacity_band", "fraction", "3 %", 0.03, "Capacity: warning band")
+    checks = [judge(job, f"capacity/{tag}", f"{tag}: required flow in every case", flows, required, AT_LEAST, band=band)]
+    normal = f"{tag}/Q@{requirement.case or job.project.normal_case}"
+    if "duty/Q_des" in ledger and normal in ledger:
+        design = ledger["duty/Q_des"]
+        checks.append(judge(job, f"design-flow/{tag}", f"{tag}: design flow at its case", [ledger[normal]], design,
+                            AT_LEAST, band=band))
+    if normal in ledger:
+        base = ledger["duty/Q_des"] if "duty/Q_des" in ledger else required
+        excess = house_limit(job, "oversupply", "fraction", "115 %", 1.15, "Oversupply: limit on the design flow")
+        share = ledger.apply(f"{tag}/r_des", formulas.PERCENT_BEP, symbol="r_des", case=ledger[normal].case,
+                             title="Flow relative to the design flow", Q=ledger[normal], Q_BEP=base)
+        near = house_limit(job, "oversupply_band", "fraction", "4 %", 0.04, "Oversupply: warning band")
+        checks.append(judge(job, f"oversupply/{tag}", f"{tag}: flow not far above the design flow", [share], excess,
+                            AT_MOST, band=near))
+    return checks
+
+
+def _curve_shape(job: Job, pump: Pump) -> Entry:
+    """Head must fall from point to point: the least fall between neighbours against zero."""
+    tag, ledger, falls = pump.tag, job.ledger, []
+    for position in range(1, len(pump.curve.flow)):
+        falls.append(ledger.apply(
+            f"{tag}/fall_{position}", formulas.PUMP_HEAD, symbol=f"Delta_H_{position}",
+            title=f"Fall of head from point {position} to point {position + 1}",
+            H_d=f"{tag}/H_{position}", H_s=f"{tag}/H_{position + 1}",
+        ))
+    least = min(falls, key=lambda entry: entry.value)
+    zero = Value(0.0, "head", "0 m" if job.ledger.system == "SI" else "0 ft", source="COMMON",
+                 locator="a curve that rises steadily to shut-off crosses the system once", status=LOOKED_UP)
+    limit = job.input("limits/curve_fall", zero, "x_lim", "Least fall of head between neighbouring points")
+    return judge(job, f"curve-shape/{tag}", f"{tag}: head falls steadily with flow", [least], limit, AT_LEAST)
+
+
+def _section(job: Job, pump: Pump, cases: list[Case], checks: tuple[str, ...]) -> Section:
+    tag = pump.tag
+    normal = next((case for case in cases if case.id == job.project.normal_case), cases[0])
+    symbols = [symbol for symbol in ("Q", "Q_1", "H", "eta", "NPSHR", "r", "closure")
+               if f"{tag}/{symbol}@{normal.id}" in job.ledger]
+    derived = tuple(f"{tag}/{symbol}@{normal.id}" for symbol in symbols
+                    if symbol != "Q_1" or job.ledger[f"{tag}/Q_1@{normal.id}"].formula)
+    heads = {"Q": ("Flow", "flow"), "H": ("Head, curve", "head"), "eta": ("Efficiency", "efficiency"),
+             "NPSHR": ("NPSHR", "head"), "r": ("Share of best-efficiency flow", "fraction")}
+    shown = [symbol for symbol in heads if symbol in symbols]
+    columns = (
+        Column("Case", width=3.2),
+        *(Column(heads[symbol][0], symbol, heads[symbol][1], f"{tag}/{symbol}@{normal.id}") for symbol in shown),
+        Column("Head, system", "H_sys", "head", f"{tag}/H_sys@{normal.id}"),
+    )
+    rows = tuple(
+        Row((case_label(case), *(Ref(f"{tag}/{symbol}@{case.id}") for symbol in shown), Ref(f"{tag}/H_sys@{case.id}")),
+            mark="in full" if case is normal else "")
+        for case in cases
+    )
+    blocks: tuple[Block, ...] = (
+        Prose(
+            "The flow is where the head of the fitted pump curve equals the head that the system needs; the two are "
+            f"computed apart and compared. Derived in full for case {case_label(normal)}."
+        ),
+        Derivation(derived, governing=(f"{tag}/H@{normal.id}",)),
+        Table(f"{tag}: duty in all cases", columns, rows),
+        Verdicts(checks),
+    )
+    return Section(f"pump-duty-{tag}", f"{tag}: duty points", blocks)
