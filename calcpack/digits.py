@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+import re
 
 THIN_SPACE = "\u2009"
 MINUS = "\u2212"
@@ -54,9 +55,6 @@ def format_number(value: float, digits: int = DEFAULT_DIGITS) -> str:
 
 
 def digits_written(text: str) -> int:
-    """Significant digits of a number as a person wrote it ('685' -> 3, '0.0457' -> 3, '10.60' -> 4, '1e-6' -> 1)."""
-    mantissa = text.strip().lower().split("e")[0].lstrip("+-").replace("_", "")
-    digits = mantissa.replace(".", "").lstrip("0")
-    if "." not in mantissa:
-        return max(len(digits), 1)
-    return max(len(digits), 1)
+    """Significant digits of a number as a person wrote it ('12 000' -> 5, '0.0457' -> 3, '10.60' -> 4, '1e-6' -> 1)."""
+    mantissa = re.split("[eE]", text.strip())[0]
+    return max(len(re.sub("[^0-9]", "", mantissa).lstrip("0")), 1)

@@ -1,7 +1,7 @@
 """Margins of a value against a limit, and the deviation between two results.
 
 One text holds for every kind, but a formula states its kinds: there is one declaration per group of kinds with equal
-units (head stands for length, elevation and diameter; gauge pressure for every pressure; ratio for all numbers).
+units (head stands for length, elevation and diameter; pressure difference for every pressure; ratio for all numbers).
 """
 
 from __future__ import annotations
@@ -10,29 +10,29 @@ from calcpack.errors import FormulaError
 from calcpack.formulas.formula import FORMULAS, Formula, formula
 from calcpack.quantities import KINDS
 
-COMPARED_KINDS = ("ratio", "head", "flow", "velocity", "gauge_pressure", "power", "duration", "rotational_speed")
+COMPARED_KINDS = ("ratio", "head", "flow", "velocity", "pressure_difference", "power", "duration", "rotational_speed")
 _KIND_OF_UNITS = {KINDS[kind].coherent: kind for kind in COMPARED_KINDS}
 
 for _kind in COMPARED_KINDS:
     formula(
         f"criteria.margin_below.{_kind}", "Margin to an upper limit", "m = 1 - x / x_lim",
         m="fraction", x=_kind, x_lim=_kind,
-        source="ARITHMETIC", note="negative when the limit is exceeded",
+        source="DEFINITION", valid={"x_lim": (0.0, None)}, note="negative when the limit is exceeded",
     )
     formula(
         f"criteria.margin_above.{_kind}", "Margin over a lower limit", "m = x / x_lim - 1",
         m="fraction", x=_kind, x_lim=_kind,
-        source="ARITHMETIC", note="negative when the limit is not reached",
+        source="DEFINITION", valid={"x_lim": (0.0, None)}, note="negative when the limit is not reached",
     )
     formula(
         f"criteria.excess.{_kind}", "Value less limit", "m = x - x_lim",
         m=_kind, x=_kind, x_lim=_kind,
-        source="ARITHMETIC", note="for limits of zero, where a relative margin has no meaning",
+        source="DEFINITION", note="for limits of zero or below, where a relative margin has no meaning",
     )
     formula(
         f"criteria.deviation.{_kind}", "Deviation of the second result", "d = x_2 / x_1 - 1",
         d="fraction", x_2=_kind, x_1=_kind,
-        source="ARITHMETIC",
+        source="DEFINITION",
     )
 
 

@@ -5,19 +5,19 @@ from calcpack.formulas.formula import formula
 DAILY_VOLUME = formula(
     "duty.daily_volume", "Volume of a day", "V_d = q_d * t_1",
     V_d="volume", q_d="daily_flow", t_1="days",
-    source="ARITHMETIC", note="with t_1 one day",
+    source="DEFINITION", note="with t_1 one day",
 )
 
 DAILY_FLOW = formula(
     "duty.daily_flow", "Required flow", "Q_req = V_d / t_d",
     Q_req="flow", V_d="volume", t_d="hours",
-    source="ARITHMETIC", locator="volume of a day over the running time of a day", valid={"t_d": (None, 86400.0)},
+    source="DEFINITION", locator="volume of a day over the running time of a day", valid={"t_d": (None, 86400.0)},
 )
 
 RUNNING_HOURS = formula(
     "duty.running_hours", "Running time in a day", "t_d = V_d / Q",
     t_d="hours", V_d="volume", Q="flow",
-    source="ARITHMETIC", valid={"t_d": (0.0, 86400.0)},
+    source="DEFINITION", valid={"t_d": (0.0, 86400.0)},
 )
 
 DESIGN_FLOW = formula(
@@ -48,5 +48,5 @@ TOTAL_HEAD = formula(
 SYSTEM_COEFFICIENT = formula(
     "duty.system_coefficient", "Quadratic loss coefficient", "C_Q = h_L / Q**2",
     C_Q="quadratic_coefficient", h_L="head", Q="flow",
-    source="ARITHMETIC", note="holds at this flow only: friction is not exactly quadratic",
+    source="DEFINITION", note="holds at this flow only: friction is not exactly quadratic",
 )

@@ -212,8 +212,8 @@ def evaluate(node: Node, values: Mapping[str, object]):
     raise FormulaError(f"{node!r} is not a node of the formula language")
 
 
-def sum_terms(term: Node, values: Mapping[str, object]):
-    """Sum of ``term`` over the entries of its list operands, taken side by side; 0 for empty lists.
+def sum_terms(term: Node, values: Mapping[str, object], value_of: Callable = evaluate):
+    """Sum of ``value_of(term)`` over the entries of its list operands, taken side by side; 0 for empty lists.
 
     Raises FormulaError when there is no list operand or their lengths differ.
     """
@@ -222,5 +222,24 @@ def sum_terms(term: Node, values: Mapping[str, object]):
     if not lists or len(set(lengths.values())) != 1:
         raise FormulaError(f"sum: needs lists of one length, got {lengths or 'no list'}")
     rows = [dict(zip(lists, row, strict=True)) for row in zip(*lists.values(), strict=True)]
-    terms = [evaluate(term, {**values, **row}) for row in rows]
+    terms = [value_of(term, {**values, **row}) for row in rows]
     return reduce(operator.add, terms) if terms else 0.0
+
+
+def magnitude(node: Node, values: Mapping[str, object]):
+    """Size of the terms behind :func:`evaluate`: differences are added up instead, signs are dropped.
+
+    The rounding of a result is a share of this, however small the result itself is.
+    """
+    match node:
+        case Negative(operand):
+            return magnitude(operand, values)
+        case Binary("+" | "-", left, right):
+            return magnitude(left, values) + magnitude(right, values)
+        case Binary("*", left, right):
+            return magnitude(left, values) * magnitude(right, values)
+        case Binary("/", left, right):
+            return magnitude(left, values) / abs(evaluate(right, values))
+        case Call("sum", (term,)):
+            return sum_terms(term, values, magnitude)
+    return abs(evaluate(node, values))

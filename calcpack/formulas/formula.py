@@ -2,13 +2,25 @@
 
 from __future__ import annotations
 
+import math
 from collections import Counter
 from collections.abc import Mapping
 from dataclasses import dataclass, field
 from itertools import chain
 
+import numpy as np
+
 from calcpack.errors import FormulaError
-from calcpack.formulas.expression import Equation, Node, Symbol, evaluate, parse, summed_terms, symbols
+from calcpack.formulas.expression import (
+    Equation,
+    Node,
+    Symbol,
+    evaluate,
+    magnitude,
+    parse,
+    summed_terms,
+    symbols,
+)
 from calcpack.quantities import KINDS, UNITS, Unit
 
 LIST = "[]"
@@ -77,22 +89,33 @@ class Formula:
     def evaluate(self, **values):
         """Result in SI from SI floats or numpy arrays; a list operand is a list or tuple.
 
-        Raises FormulaError for missing or unknown symbols, for floats without a result (division by zero), and when
-        the formula is implicit.
+        Raises FormulaError for missing or unknown symbols, for floats without a result (division by zero, root of a
+        negative number), and when the formula is implicit.
         """
         if self.unknown:
             raise FormulaError(f"{self.id}: is solved for {self.unknown}, not evaluated")
         self._check_names(values, self.operands)
+        on_arrays = any(isinstance(value, np.ndarray) for value in values.values())
         try:
-            result = evaluate(self.equation.right, self._in_own_units(values))
-        except (ZeroDivisionError, OverflowError) as error:
+            with np.errstate(**({} if on_arrays else dict.fromkeys(("divide", "over", "invalid"), "raise"))):
+                result = evaluate(self.equation.right, self._in_own_units(values))
+        except ArithmeticError as error:
             given = ", ".join(f"{name} = {value!r}" for name, value in values.items())
             raise FormulaError(f"{self.id}: no result for {given} (SI)") from error
         return UNITS[self.units[self.result]].to_si(result) if self.is_empirical else result
 
-    def evaluate_as_printed(self, values: Mapping[str, object]):
-        """Right side from numbers that are already in the units of the printed line (the hand-check)."""
-        return evaluate(self.equation.right, values)
+    def evaluate_as_printed(self, values: Mapping[str, object]) -> tuple[float, float, float]:
+        """Left side, right side and the size of the terms of the right one, for the hand-check.
+
+        ``values`` (result included) are numbers already in the units of the printed line. Sides without a result are
+        nan.
+        """
+        left, right = self.equation.left, self.equation.right
+        try:
+            with np.errstate(all="ignore"):
+                return float(evaluate(left, values)), float(evaluate(right, values)), float(magnitude(right, values))
+        except ArithmeticError:
+            return math.nan, math.nan, math.nan
 
     def residual(self, **values) -> float:
         """``left - right`` of the equation with the unknown's value among ``values``, relative to the left side."""

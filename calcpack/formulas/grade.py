@@ -20,6 +20,13 @@ HEAD_ALONG = formula(
     source="BERNOULLI", locator="loss spread evenly over the length",
 )
 
+HEAD_ALONG_EXIT = formula(
+    "grade.head_along_exit", "Total head along a line that ends in an exit loss",
+    "H_x = H_1 - (h_L - h_x) * (x / L)",
+    H_x="head", H_1="head", h_L="head", h_x="head", x="length", L="length",
+    source="BERNOULLI", locator="exit loss at the end, all other loss spread evenly over the length",
+)
+
 HYDRAULIC_GRADE = formula(
     "grade.hydraulic_grade", "Hydraulic grade", "z_h = H - h_v",
     z_h="elevation", H="head", h_v="head",
@@ -29,5 +36,5 @@ HYDRAULIC_GRADE = formula(
 AXIS_MARGIN = formula(
     "grade.axis_margin", "Hydraulic grade above the pipe axis", "m = z_h - z",
     m="head", z_h="elevation", z="elevation",
-    source="ARITHMETIC", note="below zero the pressure is below atmospheric",
+    source="DEFINITION", note="below zero the pressure is below atmospheric",
 )

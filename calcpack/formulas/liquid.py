@@ -13,7 +13,7 @@ ATMOSPHERE = formula(
 ABSOLUTE_PRESSURE = formula(
     "liquid.absolute_pressure", "Absolute pressure", "p_abs = p_atm + p_g",
     p_abs="absolute_pressure", p_atm="absolute_pressure", p_g="gauge_pressure",
-    source="ARITHMETIC", valid={"p_abs": (0.0, None)},
+    source="DEFINITION", valid={"p_abs": (0.0, None)},
 )
 
 PRESSURE_HEAD = formula(
@@ -25,5 +25,5 @@ PRESSURE_HEAD = formula(
 KINEMATIC = formula(
     "liquid.kinematic_viscosity", "Kinematic viscosity", "nu = mu / rho",
     nu="kinematic_viscosity", mu="dynamic_viscosity", rho="density",
-    source="ARITHMETIC",
+    source="DEFINITION",
 )

@@ -25,7 +25,7 @@ DISCHARGE_HEAD = formula(
 STAGE_HEAD = formula(
     "pump.stage_head", "Head of one stage", "H_1 = H / i",
     H_1="head", H="head", i="count",
-    source="ARITHMETIC", valid={"i": (1.0, None)},
+    source="DEFINITION", valid={"i": (1.0, None)},
 )
 
 HEAD_CURVE = formula(
@@ -62,51 +62,51 @@ SHAFT_POWER = formula(
 ELECTRIC_POWER = formula(
     "pump.electric_power", "Electric power taken", "P_e = P_s / (eta_m * eta_d)",
     P_e="power", P_s="power", eta_m="efficiency", eta_d="efficiency",
-    source="ARITHMETIC", locator="motor and drive in series", valid={"eta_m": (0.01, 1.0), "eta_d": (0.01, 1.0)},
+    source="DEFINITION", locator="motor and drive in series", valid={"eta_m": (0.01, 1.0), "eta_d": (0.01, 1.0)},
 )
 
 WIRE_TO_WATER = formula(
     "pump.wire_to_water", "Wire-to-water efficiency", "eta_w = P_h / P_e",
     eta_w="efficiency", P_h="power", P_e="power",
-    source="ARITHMETIC", valid={"eta_w": (0.0, 1.0)},
+    source="DEFINITION", valid={"eta_w": (0.0, 1.0)},
 )
 
 MOTOR_RATIO = formula(
     "pump.motor_ratio", "Motor rating over shaft power", "r_m = P_m / P_s",
     r_m="ratio", P_m="power", P_s="power",
-    source="ARITHMETIC",
+    source="DEFINITION",
 )
 
 SPECIFIC_ENERGY = formula(
     "pump.specific_energy", "Energy per volume pumped", "E = P_e / Q",
     E="specific_energy", P_e="power", Q="flow",
-    source="ARITHMETIC",
+    source="DEFINITION",
 )
 
 ANNUAL_HOURS = formula(
     "pump.annual_hours", "Running time in a year", "t_y = t_d * n_d",
     t_y="hours", t_d="hours", n_d="count",
-    source="ARITHMETIC", locator="running time of a day, days of operation", valid={"n_d": (0.0, 366.0)},
+    source="DEFINITION", locator="running time of a day, days of operation", valid={"n_d": (0.0, 366.0)},
 )
 
 ANNUAL_ENERGY = formula(
     "pump.annual_energy", "Energy of a year", "W = P_e * t_y",
     W="energy", P_e="power", t_y="hours",
     units={"W": "kWh", "P_e": "kW", "t_y": "h"},
-    source="ARITHMETIC", valid={"t_y": (0.0, 8784.0)},
+    source="DEFINITION", valid={"t_y": (0.0, 8784.0)},
 )
 
 ANNUAL_COST = formula(
     "pump.annual_cost", "Energy cost of a year", "C = W * c",
     C="money", W="energy", c="energy_price",
     units={"C": "", "W": "kWh", "c": "1/kWh"},
-    source="ARITHMETIC",
+    source="DEFINITION",
 )
 
 PERCENT_BEP = formula(
     "pump.percent_bep", "Flow relative to best efficiency", "r = Q / Q_BEP",
     r="fraction", Q="flow", Q_BEP="flow",
-    source="ARITHMETIC",
+    source="DEFINITION",
 )
 
 SPECIFIC_SPEED = formula(

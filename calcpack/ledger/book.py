@@ -6,7 +6,7 @@ import math
 import re
 from collections.abc import Iterable, Iterator, Sequence
 
-from calcpack.digits import DEFAULT_DIGITS, digits_written
+from calcpack.digits import DEFAULT_DIGITS, digits_written, round_significant
 from calcpack.errors import LedgerError
 from calcpack.formulas import FORMULAS, Formula
 from calcpack.formulas.formula import LIST
@@ -15,6 +15,7 @@ from calcpack.ledger.entry import Citation, Entry
 from calcpack.quantities import KINDS
 from calcpack.values import LOOKED_UP, SUPPLIED, Value
 
+_WITHOUT_VALUE = (origin.CHOSEN, origin.SERIES, origin.CHECK)
 _ORIGIN_OF_STATUS = {SUPPLIED: origin.ASSUMED, LOOKED_UP: origin.LOOKED_UP}
 Operand = Entry | str | Sequence[Entry | str]
 _NUMBER = re.compile(r"[-+]?[0-9][0-9_ ]*\.?[0-9]*(?:[eE][-+]?[0-9]+)?|[-+]?\.[0-9]+")
@@ -45,11 +46,13 @@ class Ledger:
     def given(self, entry_id: str, value: Value, symbol: str, title: str, *, note: str = "") -> Entry:
         """Book an input of the project, a catalog or property value, or the program's own supply (an assumption).
 
-        Booking the same input twice gives the entry that is there.
+        Booking the same input twice gives the entry that is there. Raises LedgerError when that one is another number.
         """
         if entry_id in self._entries:
-            return self._entries[entry_id]
-        number = _NUMBER.match(value.text.strip())
+            booked = self._entries[entry_id]
+            if (booked.value, booked.kind) != (value.si, value.kind):
+                raise LedgerError(f"{entry_id}: booked with {booked.written or booked.value}, now given {value.text}")
+            return booked
         from_bibliography = value.status in (SUPPLIED, LOOKED_UP)
         citation = Citation(value.source, value.locator) if from_bibliography else Citation(text=value.source)
         return self._book(
@@ -58,7 +61,7 @@ class Ledger:
                 _ORIGIN_OF_STATUS.get(value.status, origin.GIVEN),
                 citation=citation, status=value.status, note=note or value.note, written=value.text, path=value.path,
                 place=f"{value.file}:{value.line}" if value.line else value.file,
-                digits=digits_written(number.group()) if number else DEFAULT_DIGITS,
+                digits=self._digits_given(value),
             )
         )
 
@@ -82,7 +85,7 @@ class Ledger:
         """Evaluate an explicit formula on booked operands and book the result.
 
         Operands are entries, ids, or lists of them for list operands. Ranges of validity that are left become
-        findings of the entry. Raises LedgerError for an operand of another kind.
+        findings of the entry. Raises LedgerError for an operand of another kind and for a result that is no number.
         """
         ids, values = self._resolve(formula, operands)
         result = float(formula.evaluate(**values))
@@ -160,8 +163,13 @@ class Ledger:
 
         The source is the limit's own unless ``citation`` says otherwise.
         """
-        if verdict not in origin.VERDICTS:
-            raise LedgerError(f"{entry_id}: {verdict!r} is not a verdict")
+        if verdict not in origin.VERDICTS or comparison not in origin.COMPARISONS:
+            raise LedgerError(f"{entry_id}: {comparison!r}, {verdict!r}: not a comparison and a verdict")
+        self._require_kind(entry_id, "limit", value.kind, limit)
+        excess = value.value - limit.value if comparison == origin.AT_MOST else limit.value - value.value
+        noise = 1e-9 * max(abs(value.value), abs(limit.value))
+        if (verdict == origin.MET and not excess <= noise) or (verdict == origin.NOT_MET and not excess >= -noise):
+            raise LedgerError(f"{entry_id}: {value.value!r} {comparison} {limit.value!r} (SI) is not {verdict!r}")
         return self._book(
             Entry(
                 entry_id, title, value.symbol, margin.kind, margin.value, origin.CHECK,
@@ -196,6 +204,8 @@ class Ledger:
     def _book(self, entry: Entry) -> Entry:
         if entry.id in self._entries:
             raise LedgerError(f"{entry.id}: booked twice")
+        if not math.isfinite(entry.value) and entry.origin not in _WITHOUT_VALUE:
+            raise LedgerError(f"{entry.id}: {entry.value} is no value; operands: {entry.operands or 'none'}")
         if entry.kind not in KINDS:
             raise LedgerError(f"{entry.id}: {entry.kind!r} is not a quantity kind")
         for operand in entry.operand_ids():
@@ -210,8 +220,10 @@ class Ledger:
         ids: dict[str, origin.OperandIds] = {}
         values: dict[str, object] = {}
         for name in formula.operands:
-            kind = formula.kinds[name]
-            operand = operands[name]
+            kind, operand = formula.kinds[name], operands[name]
+            if kind.endswith(LIST) != isinstance(operand, (list, tuple)):
+                wanted = "a list of entries" if kind.endswith(LIST) else "one entry"
+                raise LedgerError(f"{formula.id}: {name} takes {wanted}")
             if kind.endswith(LIST):
                 entries = [self._entry(one, kind.removesuffix(LIST), formula, name) for one in operand]
                 ids[name] = tuple(entry.id for entry in entries)
@@ -224,9 +236,28 @@ class Ledger:
 
     def _entry(self, operand: object, kind: str, formula: Formula, name: str) -> Entry:
         entry = operand if isinstance(operand, Entry) else self[str(operand)]
-        if entry.kind != kind and KINDS[entry.kind].coherent != KINDS[kind].coherent:
-            raise LedgerError(f"{formula.id}: {name} is a {kind}; {entry.id} is a {entry.kind}")
+        self._require_kind(formula.id, name, kind, entry)
         return entry
+
+    @staticmethod
+    def _require_kind(where: str, name: str, kind: str, entry: Entry) -> None:
+        """Kinds agree when their units do; a gauge pressure is no absolute one."""
+        have, wanted = KINDS[entry.kind], KINDS[kind]
+        if have.coherent != wanted.coherent or (have.word and wanted.word and have.word != wanted.word):
+            raise LedgerError(f"{where}: {name} is a {kind}; {entry.id} is a {entry.kind}")
+
+    def _digits_given(self, value: Value) -> int:
+        """Digits as written where they carry the whole number in the printed units, else no fewer than usual."""
+        number = _NUMBER.match(value.text.strip())
+        if not number:
+            return DEFAULT_DIGITS
+        digits, kind = digits_written(number.group()), KINDS[value.kind]
+        units = {kind.display_unit(self.system), kind.coherent_unit(self.system)}
+        for unit in units:
+            if not unit.offset and not math.isclose(round_significant(unit.from_si(value.si), digits),
+                                                    unit.from_si(value.si), rel_tol=1e-12):
+                return max(digits, DEFAULT_DIGITS)
+        return digits
 
     @staticmethod
     def _findings(formula: Formula, values: dict) -> tuple[str, ...]:

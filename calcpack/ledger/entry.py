@@ -26,6 +26,11 @@ OUT_OF_RANGE = "method out of range"
 REFER = "refer to a specialist"
 VERDICTS = (MET, MET_WITH_WARNING, NOT_MET, NOT_CHECKED, OUT_OF_RANGE, REFER)
 
+# Comparisons of a check.
+AT_MOST = "≤"
+AT_LEAST = "≥"
+COMPARISONS = (AT_MOST, AT_LEAST)
+
 OperandIds = str | tuple[str, ...]
 
 

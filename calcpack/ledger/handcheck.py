@@ -7,11 +7,14 @@ from dataclasses import dataclass
 
 from calcpack.digits import MAX_DIGITS, last_digit, round_significant
 from calcpack.formulas import Formula
+from calcpack.formulas.formula import LIST
 from calcpack.ledger.book import Ledger, formula_of
-from calcpack.ledger.entry import APPLIED, Entry
+from calcpack.ledger.entry import APPLIED, SOLVED, Entry
 from calcpack.quantities import KINDS, UNITS, Unit
 
 TOLERANCE = 0.002  # relative; the other bound is one unit in the last printed digit
+NINE_DIGITS = 10.0 ** (1 - MAX_DIGITS)  # share of the largest term that printing can resolve at most
+NOISE = 1e-13  # share of the largest term that floating-point arithmetic leaves
 
 
 @dataclass(frozen=True)
@@ -28,8 +31,8 @@ class HandCheck:
 def printed_unit(formula: Formula, symbol: str, system: str) -> Unit:
     """Unit in which ``symbol`` stands in the substituted line of ``formula``."""
     if formula.is_empirical:
-        return UNITS[formula.units.get(symbol, "")]
-    return KINDS[formula.kinds[symbol].removesuffix("[]")].coherent_unit(system)
+        return UNITS[formula.units[symbol]]
+    return KINDS[formula.kinds[symbol].removesuffix(LIST)].coherent_unit(system)
 
 
 def printed_value(entry: Entry, unit: Unit) -> float:
@@ -38,15 +41,17 @@ def printed_value(entry: Entry, unit: Unit) -> float:
 
 
 def settle_digits(ledger: Ledger) -> HandCheck:
-    """Give operands more digits until every applied line can be redone by hand; report the outcome.
+    """Give operands more digits until every line can be redone by hand; report the outcome.
 
-    A line holds when the formula of the printed operands gives the printed result within one unit of its last printed
-    digit or 0.2 %, whichever is larger.
+    A line made by a formula holds when the formula of the printed operands gives the printed result within one unit
+    of its last printed digit or 0.2 %, whichever is larger. The root of an implicit formula holds when both sides of
+    the equation, worked out from printed numbers, agree within 0.2 %. A difference of nearly equal numbers whose
+    terms are printed with nine digits holds when it agrees to the ninth digit of the largest term.
     """
-    lines = ledger.of_origin(APPLIED)
+    lines = [entry for entry in ledger.of_origin(APPLIED, SOLVED) if entry.formula]
     widened: set[str] = set()
     changed = True
-    while changed:
+    while changed:  # ends: digits only grow, and MAX_DIGITS is their bound
         changed = False
         for entry in lines:
             while deviation(ledger, entry) > 1.0 and _widen(ledger, entry, widened):
@@ -54,7 +59,7 @@ def settle_digits(ledger: Ledger) -> HandCheck:
     worst, worst_id, failed = 0.0, "", []
     for entry in lines:
         share = deviation(ledger, entry)
-        if not share <= 1.0:
+        if share > 1.0:
             failed.append(entry.id)
         if share > worst:
             worst, worst_id = share, entry.id
@@ -62,49 +67,55 @@ def settle_digits(ledger: Ledger) -> HandCheck:
 
 
 def deviation(ledger: Ledger, entry: Entry) -> float:
-    """Difference between the redone and the printed result, as a share of the allowed difference."""
+    """Difference between the redone and the printed result, as a share of the allowed difference.
+
+    Infinite where the printed numbers give no result at all (for example a divisor that rounds to zero).
+    """
     formula = formula_of(entry)
-    operands = {}
+    printed = _printed_operands(ledger, entry, formula)
+    printed[formula.result] = printed_value(entry, printed_unit(formula, formula.result, ledger.system))
+    left, redone, scale = formula.evaluate_as_printed(printed)
+    tolerance = 0.0 if formula.unknown or not left else last_digit(left, entry.digits)
+    resolution = NOISE if any(_can_grow(ledger, *one) for one in _operands(ledger, entry, formula)) else NINE_DIGITS
+    allowed = max(tolerance, TOLERANCE * abs(left), resolution * scale)
+    difference = abs(redone - left)
+    if not math.isfinite(difference) or not math.isfinite(allowed):
+        return math.inf
+    return difference / allowed if difference else 0.0
+
+
+def _printed_operands(ledger: Ledger, entry: Entry, formula: Formula) -> dict[str, float | list[float]]:
+    printed: dict[str, float | list[float]] = {}
     for symbol, ids in (entry.operands or {}).items():
         unit = printed_unit(formula, symbol, ledger.system)
         if isinstance(ids, str):
-            operands[symbol] = printed_value(ledger[ids], unit)
+            printed[symbol] = printed_value(ledger[ids], unit)
         else:
-            operands[symbol] = [printed_value(ledger[one], unit) for one in ids]
-    unit = printed_unit(formula, formula.result, ledger.system)
-    printed = printed_value(entry, unit)
-    redone = float(formula.evaluate_as_printed(operands))
-    if not math.isfinite(redone) or not math.isfinite(printed):
-        return math.inf
-    difference = abs(redone - printed)
-    allowed = max(last_digit(printed, entry.digits) if printed else 0.0, TOLERANCE * abs(printed))
-    if printed == 0.0 or allowed == 0.0:
-        scale = max((abs(value) for value in _flat(operands.values())), default=0.0)
-        return 0.0 if difference <= 1e-9 * max(scale, 1e-30) else math.inf
-    return difference / allowed
+            printed[symbol] = [printed_value(ledger[one], unit) for one in ids]
+    return printed
+
+
+def _operands(ledger: Ledger, entry: Entry, formula: Formula) -> list[tuple[str, Unit]]:
+    """Ids of the operands of a line with the unit that each is printed in."""
+    pairs = []
+    for symbol, ids in (entry.operands or {}).items():
+        unit = printed_unit(formula, symbol, ledger.system)
+        pairs.extend((one, unit) for one in ([ids] if isinstance(ids, str) else ids))
+    return pairs
+
+
+def _can_grow(ledger: Ledger, operand_id: str, unit: Unit) -> bool:
+    """True while more digits would change the number as printed in ``unit``."""
+    operand = ledger[operand_id]
+    value = unit.from_si(operand.value)
+    return operand.digits < MAX_DIGITS and round_significant(value, operand.digits) != round_significant(
+        value, MAX_DIGITS
+    )
 
 
 def _widen(ledger: Ledger, entry: Entry, widened: set[str]) -> bool:
-    grown = False
-    for operand_id in entry.operand_ids():
-        operand = ledger[operand_id]
-        if operand.digits < MAX_DIGITS and not _is_exact(operand, ledger.system):
-            operand.digits += 1
-            widened.add(operand_id)
-            grown = True
-    return grown
-
-
-def _is_exact(entry: Entry, system: str) -> bool:
-    """True when printing more digits would add zeros only."""
-    for unit in (KINDS[entry.kind].coherent_unit(system), KINDS[entry.kind].display_unit(system)):
-        value = unit.from_si(entry.value)
-        if round_significant(value, entry.digits) != round_significant(value, MAX_DIGITS):
-            return False
-    return True
-
-
-def _flat(values) -> list[float]:
-    return [one for value in values for one in (value if isinstance(value, list) else [value])]
-
-
+    grown = {one for one, unit in _operands(ledger, entry, formula_of(entry)) if _can_grow(ledger, one, unit)}
+    for operand_id in grown:
+        ledger[operand_id].digits += 1
+    widened |= grown
+    return bool(grown)

@@ -34,8 +34,9 @@ def _text(node: Node) -> tuple[str, int]:
             return MINUS + _inside(operand, _NEGATIVE), _NEGATIVE
         case Binary(operator, left, right):
             level = _LEVELS[operator]
-            # a - (b - c) and a / (b * c) keep their brackets; x^(y^z) and (x^y)^z both show theirs
-            before = _inside(left, level + 1 if operator == "**" else level)
+            # a - (b - c), a / (b * c), (a / b) * c and both (x^y)^z and x^(y^z) show their brackets
+            is_mixed = level == 2 and isinstance(left, Binary) and left.operator == "/"
+            before = _inside(left, level + 1 if operator == "**" or is_mixed else level)
             return f"{before}{_SIGNS[operator]}{_inside(right, level + 1)}", level
         case Call(function, arguments):
             inside = ", ".join(_text(argument)[0] for argument in arguments)

@@ -2,22 +2,31 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Mapping
 from dataclasses import dataclass, field
 
+from calcpack.hydraulics.curves import PumpCurves
 from calcpack.hydraulics.solution import CaseSolution, Solution
 from calcpack.ledger import Entry, Ledger
-from calcpack.project.model import Case, Line, Node, Project
+from calcpack.ledger.text import display_text
+from calcpack.project.model import Case, Project
 from calcpack.values import Value
+
+PLACEHOLDER = re.compile(r"\{([^{}|]+)(?:\|[^{}]*)?\}")
 
 
 @dataclass
 class Job:
-    """One build: ``project`` and ``solution`` are read, ``ledger`` is written."""
+    """One build: ``project``, ``solution`` and ``fits`` (fitted curves by pump) are read, ``ledger`` is written.
+
+    ``program`` identifies the program that computes: name, version, libraries.
+    """
 
     project: Project
     solution: Solution
     ledger: Ledger
+    fits: Mapping[str, PumpCurves]
     program: Mapping[str, str] = field(default_factory=dict)
 
     @property
@@ -61,13 +70,9 @@ class Job:
         """Density of the liquid in a case."""
         return self.ledger[f"liquid/rho@{case.temperature}"]
 
-    def line_cases(self, line: Line) -> tuple[Case, ...]:
-        """Cases in which the line exists and carries flow."""
-        return tuple(case for case in self.cases if f"{line.tag}/h_L@{case.id}" in self.ledger)
-
-    def node(self, case: Case, tag: str) -> Node:
-        """A node as the case has it."""
-        return case.system.nodes[tag]
+    def plain(self, text: str) -> str:
+        """``text`` with its ``{entry id}`` placeholders written out, for places without links."""
+        return PLACEHOLDER.sub(lambda found: display_text(self.ledger[found[1]], self.ledger.system), text)
 
 
 def _ids(operand) -> str | tuple[str, ...]:

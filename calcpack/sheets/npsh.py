@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from calcpack.formulas import suction
+from calcpack.formulas.fittings import SUM_EQUIPMENT
 from calcpack.ledger import Entry
 from calcpack.project.model import Case, Pump
 from calcpack.sheets.content import Block, Column, Derivation, Prose, Ref, Row, Section, Sheet, Table, Verdicts
@@ -10,7 +11,6 @@ from calcpack.sheets.criteria import AT_LEAST, house_limit, judge
 from calcpack.sheets.job import Job, case_label, least
 from calcpack.sheets.path import Path, pump_path
 from calcpack.sheets.total_head import end_head
-from calcpack.formulas.fittings import SUM_EQUIPMENT
 from calcpack.values import LOOKED_UP, Value
 
 

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from calcpack.formulas import pump as formulas
-from calcpack.hydraulics.curves import FittedCurve, PumpFit
+from calcpack.hydraulics.curves import POLYNOMIAL, FittedCurve, PumpCurves
 from calcpack.ledger import Entry
 from calcpack.project.model import Pump
 from calcpack.sheets.content import Block, Column, Derivation, Facts, Prose, Ref, Row, Section, Sheet, Table
@@ -17,10 +17,10 @@ COLUMNS = (
     ("NPSHR", "npshr", "NPSHR", "head"),
 )
 COEFFICIENTS = {
-    "H": ("Head", (("a_0", "head"), ("a_1", "head_slope"), ("a_2", "quadratic_coefficient"))),
-    "eta": ("Efficiency", (("b_1", "efficiency_slope"), ("b_2", "efficiency_square"), ("b_3", "efficiency_cube"))),
-    "NPSHR": ("NPSHR", (("c_0", "head"), ("c_2", "quadratic_coefficient"))),
-}
+    "H": ("Head", (("a_0", 0), ("a_1", 1), ("a_2", 2))),
+    "eta": ("Efficiency", (("b_1", 1), ("b_2", 2), ("b_3", 3))),
+    "NPSHR": ("NPSHR", (("c_0", 0), ("c_2", 2))),
+}  # symbol and power of each term of the fitted polynomial
 FORMULA = {"H": formulas.HEAD_CURVE, "eta": formulas.EFFICIENCY_CURVE, "NPSHR": formulas.NPSHR_CURVE}
 
 
@@ -36,7 +36,7 @@ def value_at(job: Job, pump: Pump, symbol: str, flow: Entry, case: str, entry_id
     """Book head, efficiency or NPSHR ('H', 'eta', 'NPSHR') of one pump at ``flow`` from its fitted curve."""
     fit: FittedCurve = getattr(job.fits[pump.tag], {"H": "head", "eta": "efficiency", "NPSHR": "npshr"}[symbol])
     title, names = COEFFICIENTS[symbol]
-    if fit.kind == "polynomial":
+    if fit.kind == POLYNOMIAL:
         coefficients = {name: f"{pump.tag}/{name}" for name, _ in names}
         return job.ledger.apply(entry_id, FORMULA[symbol], case=case, Q=flow, **coefficients)
     return job.ledger.found(
@@ -85,21 +85,22 @@ def _points(job: Job, pump: Pump) -> Table:
 
 
 def _coefficients(job: Job, pump: Pump, symbol: str, fit: FittedCurve) -> None:
-    if fit.kind != "polynomial":
+    if fit.kind != POLYNOMIAL:
         return
     title, names = COEFFICIENTS[symbol]
     attribute = {"H": "head", "eta": "efficiency", "NPSHR": "npshr"}[symbol]
     points = tuple(f"{pump.tag}/{symbol}_{i + 1}" for i in range(len(getattr(pump.curve, attribute))))
     flows = tuple(f"{pump.tag}/Q_{i + 1}" for i in range(len(pump.curve.flow)))
-    for (name, kind), value in zip(names, fit.coefficients, strict=True):
+    for name, power in names:
         job.ledger.found(
-            f"{pump.tag}/{name}", value, name, f"{title} curve: coefficient", kind,
+            f"{pump.tag}/{name}", fit.coefficients[power], name, f"{title} curve: coefficient",
+            FORMULA[symbol].kinds[name],
             source="COMMON", locator="least-squares fit of the maker's points", residual=fit.residual,
             operands={"Q": flows, symbol: points}, digits=6,
         )
 
 
-def _fit_blocks(job: Job, pump: Pump, fit: PumpFit) -> list[Block]:
+def _fit_blocks(job: Job, pump: Pump, fit: PumpCurves) -> list[Block]:
     rows = []
     for symbol, attribute in (("H", "head"), ("eta", "efficiency"), ("NPSHR", "npshr")):
         curve = getattr(fit, attribute)
@@ -110,7 +111,7 @@ def _fit_blocks(job: Job, pump: Pump, fit: PumpFit) -> list[Block]:
             f"{pump.tag}/residual-{symbol}", curve.residual, f"d_{symbol}", f"{title}: greatest distance to a point",
             FORMULA[symbol].kind, source="COMMON", residual=0.0, digits=2,
         )
-        polynomial = curve.kind == "polynomial"
+        polynomial = curve.kind == POLYNOMIAL
         if polynomial:
             cells = [part for name, _ in names for part in (Ref(f"{pump.tag}/{name}", "equation"), "; ")][:-1]
         rows.append(Row((title, tuple(cells) if polynomial else "monotone cubic interpolation between the points",
@@ -122,7 +123,7 @@ def _fit_blocks(job: Job, pump: Pump, fit: PumpFit) -> list[Block]:
     ]
 
 
-def _speeds(job: Job, pump: Pump, fit: PumpFit) -> list[Block]:
+def _speeds(job: Job, pump: Pump, fit: PumpCurves) -> list[Block]:
     tag, ledger = pump.tag, job.ledger
     best = ledger[f"{tag}/Q_BEP"]
     if not fit.head.flow_min <= best.value <= fit.head.flow_max:

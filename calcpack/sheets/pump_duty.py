@@ -3,9 +3,9 @@
 from __future__ import annotations
 
 from calcpack.formulas import pump as formulas
-from calcpack.formulas.criteria import deviation
 from calcpack.ledger import Entry
 from calcpack.project.model import Case, Pump
+from calcpack.sheets.compare import difference
 from calcpack.sheets.content import Block, Column, Derivation, Prose, Ref, Row, Section, Sheet, Table, Verdicts
 from calcpack.sheets.criteria import AT_LEAST, AT_MOST, house_limit, judge
 from calcpack.sheets.flow_basis import required_flow
@@ -53,10 +53,8 @@ def _book(job: Job, case: Case, pump: Pump) -> bool:
     if fit.npshr is not None:
         value_at(job, pump, "NPSHR", each, case.id, f"{tag}/NPSHR@{case.id}")
     job.ledger.apply(f"{tag}/r@{case.id}", formulas.PERCENT_BEP, case=case.id, Q=each, Q_BEP=best)
-    job.ledger.apply(
-        f"{tag}/closure@{case.id}", deviation("head"), case=case.id, symbol="d_H",
-        title="Head of the pump against head of the system", x_2=f"{tag}/H@{case.id}", x_1=f"{tag}/H_sys@{case.id}",
-    )
+    difference(job, f"{tag}/closure@{case.id}", "d_H", "Head of the pump against head of the system",
+               own=job.ledger[f"{tag}/H_sys@{case.id}"], other=job.ledger[f"{tag}/H@{case.id}"])
     return True
 
 

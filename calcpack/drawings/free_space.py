@@ -1,0 +1,50 @@
+"""Places for what is written last: the names of nodes and the legend, where nothing else stands."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Sequence
+
+from calcpack.drawings.geometry import Box
+
+CLEAR = 0.4  # mm between a name and anything else
+_STEP = 2.0
+
+
+def name_place(x: float, y: float, width: float, height: float, occupied: Sequence[Box], frame: Box) -> Box:
+    """The free rectangle of ``width`` and ``height`` nearest to (x, y); inside ``frame`` if it can be."""
+
+    def cost(box: Box) -> tuple:
+        hits = sum(box.overlaps(other, CLEAR) for other in occupied)
+        outside = max(frame.x0 - box.x0, 0.0) + max(box.x1 - frame.x1, 0.0)
+        away = abs((box.x0 + box.x1) / 2 - x) + 1.5 * abs((box.y0 + box.y1) / 2 - y)
+        return hits, round(outside, 3), round(away, 3), box.y0, box.x0
+
+    return min(_around(x, y, width, height), key=cost)
+
+
+def _around(x: float, y: float, width: float, height: float) -> list[Box]:
+    boxes = []
+    for ring in range(10):
+        off = 1.5 + 1.6 * ring
+        for dx in (off, -off - width, -width / 2, -width * 0.85, -width * 0.15):
+            for dy in (-off - height, off, -height / 2, -height - 0.6, 0.6):
+                boxes.append(Box(x + dx, y + dy, x + dx + width, y + dy + height))
+    return boxes
+
+
+def free_rectangle(sizes: Iterable[tuple[float, float]], occupied: Sequence[Box], frame: Box, gap: float) -> Box | None:
+    """The first of ``sizes`` that fits into ``frame`` clear of everything by ``gap``; of its places the one nearest to
+    the upper left corner. None when no size fits."""
+    for width, height in sizes:
+        best = None
+        rows = int((frame.y1 - frame.y0 - height) / _STEP) + 1
+        columns = int((frame.x1 - frame.x0 - width) / _STEP) + 1
+        for row in range(max(rows, 0)):
+            for column in range(max(columns, 0)):
+                x, y = frame.x0 + column * _STEP, frame.y0 + row * _STEP
+                box = Box(x, y, x + width, y + height)
+                if (best is None or row + column < best[0]) and not any(box.overlaps(other, gap) for other in occupied):
+                    best = (row + column, box)
+        if best:
+            return best[1]
+    return None

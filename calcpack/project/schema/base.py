@@ -1,0 +1,128 @@
+"""What every block of the input files has in common: strict keys, and reading on after a mistake.
+
+A wrong key or value is reported and replaced by :data:`BROKEN`, so that one mistake hides no other. Nothing that holds
+BROKEN leaves ``project.load``: it raises as soon as anything was reported.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Iterator
+from contextlib import contextmanager
+from dataclasses import dataclass, field
+from typing import Annotated, Any, Literal
+
+from pydantic import BaseModel, ConfigDict, Field, ValidationError, WrapValidator, field_validator, model_validator
+from pydantic_core.core_schema import ValidationInfo
+
+from calcpack.project.problems import Problems, nearest
+from calcpack.project.read import Section
+from calcpack.project.schema.messages import complaint
+from calcpack.values import CONFIRMED, UNCONFIRMED
+
+Status = Literal["confirmed", "unconfirmed"]
+
+
+class _Broken:
+    """Stands for a part of the input that could not be read and was reported."""
+
+    def __repr__(self) -> str:
+        return "BROKEN"
+
+    def __bool__(self) -> bool:
+        return False
+
+
+BROKEN: Any = _Broken()
+
+
+def intact(*parts: object) -> bool:
+    """True when none of the parts is BROKEN."""
+    return not any(part is BROKEN for part in parts)
+
+
+@dataclass
+class Reading:
+    """Context of one reading: where problems go, the unit system for hints, and the origin that blocks state."""
+
+    problems: Problems
+    units: str
+    origins: list[tuple[str, str]] = field(default_factory=lambda: [("", "")])
+
+    @contextmanager
+    def block(self, raw: Section, stated: bool) -> Iterator[None]:
+        """While the block is read its ``source`` and ``status``, if it states any, hold for the values in it."""
+        if stated and ("source" in raw or "status" in raw):
+            status = str(raw.get("status", UNCONFIRMED))
+            self.origins.append((str(raw.get("source", "")), status))
+            yield
+            self.origins.pop()
+        else:
+            yield
+
+
+def tolerant(raw: Any, handler: Callable[[Any], Any], info: ValidationInfo) -> Any:
+    """Validate; on a mistake report it and go on with BROKEN."""
+    if raw is BROKEN:
+        return BROKEN
+    try:
+        return handler(raw)
+    except ValidationError as error:
+        for detail in error.errors(include_url=False):
+            info.context.problems.add(*complaint(raw, detail))
+        return BROKEN
+
+
+Tolerant = WrapValidator(tolerant)
+
+
+class Input(BaseModel):
+    """A block of keys. Unknown and missing keys are reported; so is every value that does not fit."""
+
+    model_config = ConfigDict(frozen=True, extra="forbid", str_strip_whitespace=True, arbitrary_types_allowed=True)
+
+    @model_validator(mode="wrap")
+    @classmethod
+    def _read_on(cls, raw: Any, handler: Callable[[Any], Any], info: ValidationInfo) -> Any:
+        if raw is BROKEN:
+            return BROKEN
+        problems = info.context.problems
+        keys = {(entry.alias or name): entry for name, entry in cls.model_fields.items()}
+        if not isinstance(raw, Section):
+            problems.add(raw, "a block of keys is wanted here", f"keys: {', '.join(keys)}")
+            return BROKEN
+        known = {key: value for key, value in raw.items() if key in keys}
+        excused = set()
+        for key in raw.keys() - keys.keys():
+            free = [name for name in keys if name not in raw]
+            meant = nearest(key, free)
+            excused.add(meant)
+            hint = f"did you mean '{meant}'?" if meant else f"known: {', '.join(keys)}"
+            at = raw[key]
+            problems.add_at(raw.path, at.file, at.line, f"'{key}' is not known here", hint)
+        for key, entry in keys.items():
+            if entry.is_required() and key not in raw:
+                known[key] = BROKEN
+                if key not in excused:
+                    problems.add(raw, f"'{key}' is missing", _purpose(entry.description))
+        with info.context.block(raw, stated=issubclass(cls, Sourced)):
+            return handler(known)
+
+    @field_validator("*", mode="wrap")
+    @classmethod
+    def _tolerate(cls, raw: Any, handler: Callable[[Any], Any], info: ValidationInfo) -> Any:
+        return tolerant(raw, handler, info)
+
+
+class Sourced(Input):
+    """A block whose ``source`` and ``status`` hold for every value in it that states none of its own."""
+
+    source: Annotated[
+        str, Field(description="document and place that the values of this block come from, unless one names its own")
+    ] = ""
+    status: Annotated[
+        Status | None, Field(description=f"{CONFIRMED} or {UNCONFIRMED}: holds for the values of this block")
+    ] = None
+
+
+def _purpose(description: str | None) -> str:
+    return f"it is: {description}" if description else ""

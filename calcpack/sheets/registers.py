@@ -1,0 +1,228 @@
+"""Registers: every input with its source and status, every assumption, every catalog value, and what is still open."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+from calcpack.catalog.sources import source
+from calcpack.errors import LedgerError
+from calcpack.ledger import Entry
+from calcpack.ledger.entry import ASSUMED, LOOKED_UP
+from calcpack.project.model import Statement
+from calcpack.quantities import KINDS
+from calcpack.sheets.content import Block, Cell, Column, Facts, Prose, Ref, Row, Section, Sheet, Table
+from calcpack.sheets.job import Job
+from calcpack.values import CONFIRMED, UNCONFIRMED, Value
+
+OPEN = "open"
+TOOL = "TOOL"
+TO_CONFIRM = "edition and clause to be confirmed"
+
+UNCONFIRMED_INPUT = "inputs not confirmed"
+PROGRAM_ASSUMPTION = "assumptions made by the program"
+PROJECT_ASSUMPTION = "open assumptions of the project"
+PROJECT_NOTE = "open notes of the project"
+KINDS_OF_ITEM = (UNCONFIRMED_INPUT, PROGRAM_ASSUMPTION, PROJECT_ASSUMPTION, PROJECT_NOTE)
+
+# Kind of a tolerance, where the difference of two values is another kind than the values.
+_DIFFERENCE = {
+    "temperature": "temperature_difference",
+    "gauge_pressure": "pressure_difference",
+    "absolute_pressure": "pressure_difference",
+}
+
+
+@dataclass(frozen=True)
+class OpenItem:
+    """Something that somebody still has to confirm or close. ``id`` is its number (A3), input path or statement id;
+    ``text`` may hold placeholders; ``entry`` is the ledger entry behind it ("" for statements)."""
+
+    kind: str
+    id: str
+    text: str
+    entry: str = ""
+    owner: str = ""
+
+
+def fill(job: Job) -> Sheet:
+    """Book the inputs that no sheet used, and lay out the registers. The ledger must be complete."""
+    inputs = _book_unused(job)
+    sections = (
+        _inputs(job, inputs), _assumptions(job), _looked_up(job), _open(job),
+    )
+    return Sheet("registers", "Inputs and assumptions", sections)
+
+
+def count(job: Job, entry_id: str, number: int, title: str) -> Entry:
+    """Book a count that the program made, so that it can be printed. Raises LedgerError when it has changed since."""
+    if entry_id in job.ledger:
+        booked = job.ledger[entry_id]
+        if booked.value != number:
+            raise LedgerError(f"{entry_id}: counted {booked.value:g}, now {number}; something was booked in between")
+        return booked
+    return job.ledger.looked_up(entry_id, number, "N", title, "count", source=TOOL, locator="counted",
+                                digits=len(str(number)))
+
+
+def plain(words: str) -> str:
+    """The user's words in a paragraph: braces would name ledger entries there, so they become parentheses."""
+    return words.replace("{", "(").replace("}", ")")
+
+
+def assumed(job: Job) -> list[tuple[str, Entry]]:
+    """Every value that the program supplied, with its number A1, A2, ... in booking order."""
+    return [(f"A{number}", entry) for number, entry in enumerate(job.ledger.of_origin(ASSUMED), start=1)]
+
+
+def open_items(job: Job) -> tuple[OpenItem, ...]:
+    """Everything open, by kind in the order of :data:`KINDS_OF_ITEM`. Needs the complete ledger."""
+    entries = _book_unused(job)
+    items = [
+        OpenItem(UNCONFIRMED_INPUT, value.path, _words(entries[value.path][0]), entries[value.path][0])
+        for value in _given(job) if value.status == UNCONFIRMED
+    ]
+    items += [OpenItem(PROGRAM_ASSUMPTION, number, _words(entry.id), entry.id) for number, entry in assumed(job)]
+    for kind, statements in ((PROJECT_ASSUMPTION, job.project.assumptions), (PROJECT_NOTE, job.project.notes)):
+        items += [OpenItem(kind, one.id, plain(one.text), owner=one.owner) for one in statements if one.status == OPEN]
+    return tuple(items)
+
+
+def _words(entry_id: str) -> str:
+    return f"{{{entry_id}|title}}: {{{entry_id}|quantity}}"
+
+
+def open_counts(job: Job) -> dict[str, Entry]:
+    """How many open items there are of each kind, as booked counts (kinds without any included)."""
+    items = open_items(job)
+    return {
+        kind: count(job, f"count/{kind.replace(' ', '-')}", sum(item.kind == kind for item in items),
+                    f"Number of {kind}")
+        for kind in KINDS_OF_ITEM
+    }
+
+
+def _given(job: Job) -> list[Value]:
+    return [value for value in job.project.values if value.status in (CONFIRMED, UNCONFIRMED)]
+
+
+def _book_unused(job: Job) -> dict[str, list[str]]:
+    """Ids of the entries of every input by its path; an input without any is booked, so that it is printed too."""
+    booked: dict[str, list[str]] = {}
+    for entry in job.ledger:
+        if entry.path:
+            booked.setdefault(entry.path, []).append(entry.id)
+    for value in job.project.values:
+        if value.path not in booked:
+            note = value.note or "read, used by no sheet"
+            booked[value.path] = [job.ledger.given(f"input/{value.path}", value, "", value.path, note=note).id]
+    return booked
+
+
+def _inputs(job: Job, entries: dict[str, list[str]]) -> Section:
+    columns = (
+        Column("Input", width=3.0), Column("As written", width=1.5), Column("As used", width=1.7),
+        Column("Tolerance"), Column("Source", width=2.6), Column("Status", width=1.2), Column("Line", width=1.2),
+    )
+    values, blocks = _given(job), []
+    for file in dict.fromkeys(value.file for value in values):
+        rows = tuple(_input_row(job, value, entries[value.path]) for value in values if value.file == file)
+        blocks.append(Table(f"Inputs of {file}", columns, rows))
+    if not blocks:
+        blocks.append(Prose("The project states no values.", "note"))
+    return Section("register-inputs", "Input register", tuple(blocks))
+
+
+def _input_row(job: Job, value: Value, ids: list[str]) -> Row:
+    used = [part for entry_id in ids for part in ("; ", Ref(entry_id, "quantity"))][1:]
+    unused = ids[0].startswith("input/")
+    cells: tuple[Cell, ...] = (
+        value.path, Ref(ids[0], "written"), "not used" if unused else tuple(used), _tolerance(job, value),
+        Ref(ids[0], "source") if value.source else "none stated", value.status, f"{value.file}:{value.line}",
+    )
+    return Row(cells, mark="open" if value.status == UNCONFIRMED else "")
+
+
+def _tolerance(job: Job, value: Value) -> Cell:
+    if value.tolerance is None:
+        return ""
+    entry_id, kind = f"input/{value.path}/tolerance", _DIFFERENCE.get(value.kind, value.kind)
+    if entry_id not in job.ledger:
+        as_written = Value(value.tolerance, kind, "", value.source, status=value.status, file=value.file,
+                           line=value.line)
+        entry = job.ledger.given(entry_id, as_written, "u", f"{value.path}: tolerance")
+        entry.digits = fewest_digits(job, entry)
+    return ("± ", Ref(entry_id, "quantity"))
+
+
+def fewest_digits(job: Job, entry: Entry) -> int:
+    """The least number of digits that carries the whole value in the printed unit, four at most."""
+    shown = KINDS[entry.kind].display_unit(job.ledger.system).from_si(entry.value)
+    return next((digits for digits in range(1, 4) if abs(float(f"{shown:.{digits}g}") - shown) <= 1e-9 * abs(shown)), 4)
+
+
+def _assumptions(job: Job) -> Section:
+    columns = (
+        Column("No.", width=0.6), Column("Value supplied by the program", width=3.2), Column("Value", width=1.3),
+        Column("Source", width=2.2), Column("Reason", width=3.0),
+    )
+    rows = tuple(
+        Row((number, Ref(entry.id, "title"), Ref(entry.id, "quantity"), _sourced(entry), plain(entry.note)))
+        for number, entry in assumed(job)
+    )
+    blocks: list[Block] = [Prose(
+        "A value that the project does not state is supplied by the program, never silently: each is an assumption "
+        "until the responsible engineer confirms it or states another in the input files."
+    )]
+    if rows:
+        blocks.append(Table("Assumptions made by the program", columns, rows))
+    if job.project.assumptions:
+        blocks.append(_statements("Assumptions of the project", job.project.assumptions))
+    if job.project.notes:
+        blocks.append(_statements("Notes of the project", job.project.notes))
+    return Section("register-assumptions", "Assumption register", tuple(blocks))
+
+
+def _statements(caption: str, statements: Sequence[Statement]) -> Table:
+    columns = (Column("Id", width=0.8), Column("Statement", width=4.0), Column("Reason", width=3.0),
+               Column("Status", width=0.8), Column("Closed by", width=1.4))
+    rows = tuple(
+        Row((one.id, one.text, one.reason, one.status, one.owner), mark="open" if one.status == OPEN else "")
+        for one in statements
+    )
+    return Table(caption, columns, rows)
+
+
+def _looked_up(job: Job) -> Section:
+    columns = (Column("Value", width=3.4), Column("Entry", width=2.2), Column("As used", width=1.4),
+               Column("Source and row", width=3.6))
+    entries = [entry for entry in job.ledger.of_origin(LOOKED_UP) if entry.citation.key != TOOL]
+    rows = tuple(
+        Row((Ref(entry.id, "title"), entry.id, Ref(entry.id, "quantity"), _sourced(entry))) for entry in entries
+    )
+    note = f"A source whose text was not seen is marked: {TO_CONFIRM}."
+    table = Table("Catalog rows, property values and constants", columns, rows, note)
+    return Section("register-catalog", "Values looked up", (table if rows else Prose("None.", "note"),))
+
+
+def _sourced(entry: Entry) -> Cell:
+    if entry.citation.key and source(entry.citation.key).needs_confirmation:
+        return (Ref(entry.id, "source"), f" ({TO_CONFIRM})")
+    return Ref(entry.id, "source")
+
+
+def _open(job: Job) -> Section:
+    items, counts = open_items(job), open_counts(job)
+    columns = (Column("Item", width=2.6), Column("Kind", width=2.0), Column("Value", width=1.4),
+               Column("What it is", width=3.4), Column("Closed by", width=1.4))
+    rows = tuple(
+        Row((item.id, item.kind, Ref(item.entry, "quantity") if item.entry else "",
+             Ref(item.entry, "title") if item.entry else item.text, item.owner or "not named"))
+        for item in items
+    )
+    blocks: list[Block] = [Facts(tuple((kind[0].upper() + kind[1:], Ref(entry.id)) for kind, entry in counts.items()))]
+    if rows:
+        blocks.append(Table("Open items", columns, rows))
+    else:
+        blocks.append(Prose("Nothing is open."))
+    return Section("register-open", "Open items", tuple(blocks))
