@@ -9,6 +9,7 @@ from __future__ import annotations
 import difflib
 import math
 import re
+from fractions import Fraction
 from functools import cache
 
 from calcpack.errors import UnitError
@@ -103,9 +104,8 @@ def parse_quantity(text: str, kind: str, system: str) -> tuple[float, str]:
         raise UnitError(
             f"'{written}' is a temperature, not a difference", f"write '{_example(number, wanted, system)}'"
         )
-    si = _finite(written, number) * factor + offset
-    if not math.isfinite(si):
-        raise UnitError(f"'{written}' is too large to compute with")
+    _check_finite(written, number)
+    si = _si_value(written, number, factor, offset)
     if kind in ("absolute_pressure", "temperature") and si < 0.0:
         raise UnitError(f"'{written}' is below absolute zero")
     return si, number
@@ -142,13 +142,27 @@ def _split(written: str, wanted: Kind, system: str) -> tuple[str, str]:
                     f"write for example '{example}'")  # fmt: skip
 
 
-def _finite(written: str, number: str) -> float:
+def _check_finite(written: str, number: str) -> None:
     value = float(number)
     if not math.isfinite(value):
         raise UnitError(f"'{written}' is too large to compute with")
     if value == 0.0 and re.search("[1-9]", number.lower().split("e")[0]):
         raise UnitError(f"'{written}' is too small to compute with")
-    return value
+
+
+def _si_value(written: str, number: str, factor: float, offset: float) -> float:
+    """The float nearest to the exact product, so that 154.05 mm is 0.15405 m to the last bit."""
+    try:
+        return float(Fraction(number) * _exact(factor) + _exact(offset))
+    except OverflowError:
+        raise UnitError(f"'{written}' is too large to compute with") from None
+
+
+@cache
+def _exact(factor: float) -> Fraction:
+    """The short fraction that a factor stands for (1/3600, 0.3048), else the float itself."""
+    short = Fraction(factor).limit_denominator(10**12)
+    return short if float(short) == factor else Fraction(factor)
 
 
 def _plain_number(written: str, number: str, unit: str, wanted: Kind) -> float:
@@ -157,7 +171,8 @@ def _plain_number(written: str, number: str, unit: str, wanted: Kind) -> float:
         raise UnitError(
             f"'{written}' has a unit", f"{with_article(wanted.title)} is a plain number such as '{number}', or in %"
         )
-    return _finite(written, number) * found.factor
+    _check_finite(written, number)
+    return _si_value(written, number, found.factor, 0.0)
 
 
 def _pressure_word(unit: str) -> tuple[str, str]:

@@ -153,7 +153,7 @@ def case(
     id: str, built: System, *, temperature: str = "normal", level: Mapping[str, str] | str = "0",
     roughness: str = "new", states: Mapping[str, str] | None = None, running: Mapping[str, int] | int = 1,
 ) -> Case:
-    """A case: one level name for every tank that has it or one per tank, one roughness state, units running for every pump."""
+    """A case: one level name for every tank that has it (or one per tank), one roughness state, units running."""
     tanks = {tag: level if isinstance(level, str) else level.get(tag, "0") for tag in built.nodes}
     return Case(
         id, id, built, temperature,

@@ -8,7 +8,6 @@ from calcpack.formulas import criteria, fittings, liquid, pipe_flow, pump, sucti
 from calcpack.ledger import Citation, Entry, Ledger, settle_digits
 from calcpack.ledger import entry as origin
 from calcpack.project.model import Document, Person, RevisionNote, SourceDocument
-from calcpack.quantities import FOOT, INCH, KINDS
 from calcpack.report.content import CoverContent, OpenItem, PackageContent, Preliminary
 from calcpack.sheets.content import (
     Column,
@@ -37,7 +36,7 @@ LINES = {"L-101": ("suction line", 9.5, 202.72), "L-102": ("pump discharge", 6.0
 FITTINGS = (("45° bend", 8, 16.0), ("90° long-radius elbow", 6, 14.0), ("gate valve", 1, 8.0),
             ("swing check valve, angled seat", 1, 100.0), ("butterfly valve", 2, 45.0))  # fmt: skip
 SVG = (
-    '<svg xmlns="http://www.w3.org/2000/svg" viewBox="0 0 400 200" font-family="CP Sans" font-size="11">'
+    '<svg xmlns="http://www.w3.org/2000/svg" width="170mm" height="85mm" viewBox="0 0 400 200" font-family="CP Sans" font-size="7">'
     '<path d="M40 170H380M40 170V20" stroke="#000" fill="none"/><path d="M40 140Q200 130 380 30" stroke="#000" '
     'fill="none" stroke-width="1.5"/><text x="200" y="192">Q / (m³/h)</text><text x="60" y="30">H / m</text></svg>'
 )

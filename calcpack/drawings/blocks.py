@@ -19,7 +19,7 @@ ANYWHERE = (RIGHT, DOWN, LEFT, UP)
 PUMP_RADIUS = 3.6
 NODE_RADIUS = 0.95
 BRANCH_RADIUS = 0.75
-_GAP = 1.5  # mm between symbols along a line
+_GAP = 1.4  # mm between symbols along a line
 _ARROW = 4.2  # mm of pipe for the flow arrow
 
 
@@ -110,6 +110,7 @@ class PumpBlock(Block):
     way: int = 1
     units: int = 1
     running: int = 1
+    duty: int = 1
     rows: list[Words] = field(default_factory=list)
 
     PITCH = 2 * PUMP_RADIUS + 1.6
@@ -119,12 +120,14 @@ class PumpBlock(Block):
         side = max(PUMP_RADIUS + manifold, widest(self.rows) / 2)
         self.left = self.right = side
         self.up = PUMP_RADIUS + 1.0 + ROW * len(self.rows)
-        self.down = PUMP_RADIUS + 0.6 + self.PITCH * (self.units - 1) + (ROW if self.standby_row else 0.0)
+        self.down = PUMP_RADIUS + 0.6 + self.PITCH * (self.units - 1) + (ROW if self.word else 0.0)
 
     @property
-    def standby_row(self) -> bool:
-        """True when a unit stands by, so that the word is written under it."""
-        return self.running < self.units
+    def word(self) -> str:
+        """What is written under the last unit when it does not run."""
+        if self.running >= self.units:
+            return ""
+        return "standby" if self.duty < self.units else "not running"
 
     def port(self, way, line):
         return (self.x + way * self.left, self.y), (RIGHT if way > 0 else LEFT,)
@@ -145,8 +148,8 @@ class PumpBlock(Block):
         for unit in range(self.units):
             draw_pump(svg, x, y + unit * self.PITCH, self.way, unit >= self.running)
         set_rows(svg, self.rows, x, y - self.up, "middle")
-        if self.standby_row:
-            Words("standby").set(svg, x, y + self.down - ROW / 2, "middle")
+        if self.word:
+            Words(self.word).set(svg, x, y + self.down - ROW / 2, "middle")
 
 
 def draw_pump(svg: Svg, x: float, y: float, way: int, dashed: bool, radius: float = PUMP_RADIUS) -> None:

@@ -2,8 +2,7 @@
 
 from __future__ import annotations
 
-import math
-from collections.abc import Sequence
+from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
 from itertools import pairwise
 
@@ -38,28 +37,35 @@ class ElevationScale:
         return self.knots[-1][0]
 
 
-def elevation_scale(low: float, high: float, height: float, told_apart: Sequence[float]) -> ElevationScale:
-    """An axis of ``height`` mm from ``low`` to ``high`` on which neighbours of ``told_apart`` are at least
-    ``SMALLEST_GAP`` apart; everything else shares what is left to one scale."""
+def elevation_scale(
+    low: float, high: float, height: float, told_apart: Iterable[tuple[float, float]]
+) -> ElevationScale:
+    """An axis of ``height`` mm from ``low`` to ``high`` on which the two elevations of every pair of ``told_apart`` are
+    at least ``SMALLEST_GAP`` apart; everything else shares what is left to one scale."""
     if high - low < 1e-6:
         low, high = low - 0.5, high + 0.5
-    marks = sorted({round(z, 9) for z in told_apart if low <= z <= high})
-    gaps = [(a, b) for a, b in pairwise(marks) if b - a > 1e-6]
-    tight: list[tuple[float, float]] = []
+    pairs = sorted({(min(pair), max(pair)) for pair in told_apart if abs(pair[0] - pair[1]) > 1e-6})
+    ends = sorted({low, high, *(z for pair in pairs for z in pair)})
+    pieces = list(pairwise(ends))
+    steepness: dict[tuple[float, float], float] = {}  # mm per m where a pair asks for more than the scale
     while True:
-        rest = (high - low) - sum(b - a for a, b in tight)
-        scale = (height - SMALLEST_GAP * len(tight)) / rest if rest > 1e-9 else math.inf
-        more = [gap for gap in gaps if gap not in tight and (gap[1] - gap[0]) * scale < SMALLEST_GAP - 1e-9]
+        stretched = sum((b - a) * steepness[a, b] for a, b in steepness)
+        rest = (high - low) - sum(b - a for a, b in steepness)
+        scale = max(height - stretched, 0.2 * height) / rest if rest > 1e-9 else 0.0
+        more = {}
+        for a, b in pieces:
+            asked = [SMALLEST_GAP / (q - p) for p, q in pairs if p <= a and b <= q]
+            if max(asked, default=0.0) > max(scale, steepness.get((a, b), 0.0)) + 1e-9:
+                more[a, b] = max(asked)
         if not more:
             break
-        tight += more
-    tight.sort()
-    ends = sorted({low, high, *(z for gap in tight for z in gap)})
-    knots, y = [(ends[0], height)], height
-    for a, b in pairwise(ends):
-        y -= SMALLEST_GAP if (a, b) in tight else (b - a) * scale
+        steepness |= more
+    y = stretched + scale * rest
+    knots = [(ends[0], y)]
+    for a, b in pieces:
+        y -= (b - a) * steepness.get((a, b), scale)
         knots.append((b, y))
-    return ElevationScale(tuple(knots), _joined(tight))
+    return ElevationScale(tuple(knots), _joined(sorted(steepness)))
 
 
 def _joined(intervals: Sequence[tuple[float, float]]) -> tuple[tuple[float, float], ...]:

@@ -6,8 +6,10 @@ from collections.abc import Iterable, Sequence
 
 from calcpack.drawings.geometry import Box
 
-CLEAR = 0.4  # mm between a name and anything else
+CLEAR = 1.0  # mm between a name and anything else
 _STEP = 2.0
+_SAMPLES = 16  # points looked at along a leader; the first few lie on the node itself
+_OFF = 5
 
 
 def name_place(x: float, y: float, width: float, height: float, occupied: Sequence[Box], frame: Box) -> Box:
@@ -15,11 +17,26 @@ def name_place(x: float, y: float, width: float, height: float, occupied: Sequen
 
     def cost(box: Box) -> tuple:
         hits = sum(box.overlaps(other, CLEAR) for other in occupied)
+        hits += sum(_crosses((x, y), leader_end(x, y, box), other) for other in occupied)
         outside = max(frame.x0 - box.x0, 0.0) + max(box.x1 - frame.x1, 0.0)
         away = abs((box.x0 + box.x1) / 2 - x) + 1.5 * abs((box.y0 + box.y1) / 2 - y)
         return hits, round(outside, 3), round(away, 3), box.y0, box.x0
 
     return min(_around(x, y, width, height), key=cost)
+
+
+def leader_end(x: float, y: float, box: Box) -> tuple[float, float]:
+    """The point of a name's rectangle nearest to what it names, where its leader ends."""
+    return min(max(x, box.x0), box.x1), min(max(y, box.y0), box.y1)
+
+
+def _crosses(start: tuple[float, float], end: tuple[float, float], other: Box) -> bool:
+    """True when the straight way from just off ``start`` to ``end`` passes through ``other``."""
+    for step in range(_OFF, _SAMPLES + 1):
+        share = step / _SAMPLES
+        if other.holds(start[0] + share * (end[0] - start[0]), start[1] + share * (end[1] - start[1])):
+            return True
+    return False
 
 
 def _around(x: float, y: float, width: float, height: float) -> list[Box]:

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
+from itertools import pairwise
 
 from calcpack.drawings.blocks import Block, JunctionBlock, LineBlock, OutletBlock, PumpBlock
 from calcpack.drawings.elevation_scale import ElevationScale, elevation_scale
@@ -39,7 +40,16 @@ class Items:
         crests = [crest for line in self.system.lines.values() if (crest := crest_of(line)) is not None]
         every = [*levels, *shafts, *nodes, *crests]
         margin = AXIS_MARGIN * (max(every) - min(every))
-        return elevation_scale(min(every) - margin, max(every) + margin, height, [*levels, *shafts])
+        return elevation_scale(min(every) - margin, max(every) + margin, height, self._told_apart())
+
+    def _told_apart(self) -> list[tuple[float, float]]:
+        """Neighbouring levels of a tank, among them the shafts of the pumps that draw from it."""
+        pairs: list[tuple[float, float]] = []
+        for node in self.system.nodes.values():
+            fed = {line.end for line in self.system.lines.values() if line.start == node.tag}
+            shafts = {pump.shaft_elevation.si for pump in self.system.pumps.values() if pump.suction in fed}
+            pairs += pairwise(sorted(shafts | {level.si for level in (node.levels or {}).values()}))
+        return pairs
 
     def node_blocks(self) -> dict[str, Block]:
         """Blocks of tanks, outlets, junctions and pumps, by tag."""
@@ -114,7 +124,7 @@ class Items:
         feeds = [tag for tag, line in self.system.lines.items() if pump.suction in (line.start, line.end)]
         from_left = all(self.graph.line_column(tag) < self.graph.column[pump.tag] for tag in feeds)
         block = PumpBlock(
-            pump.tag, way=1 if from_left else -1, units=pump.installed, running=running,
+            pump.tag, way=1 if from_left else -1, units=pump.installed, running=running, duty=pump.duty,
             rows=[Words(pump.tag, bold=True), *entries],
         )  # fmt: skip
         block.y = self.scale.y(pump.shaft_elevation.si)

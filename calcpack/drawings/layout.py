@@ -11,11 +11,12 @@ from collections.abc import Mapping
 from dataclasses import dataclass, field
 from itertools import pairwise
 
-from calcpack.drawings.blocks import Block, LineBlock, PumpBlock
+from calcpack.drawings.blocks import Block, JunctionBlock, LineBlock, PumpBlock
 from calcpack.drawings.geometry import nearest_slot
 from calcpack.project.model import TANK, System
 
 ROOM = 1.6  # mm between two blocks of a column
+NAME_ROOM = 6.0  # mm between two nodes of a column, for the name of one
 CHANNEL = 3.4  # mm between two columns, for one riser
 RISER = 2.0  # mm more for each further riser
 
@@ -138,7 +139,8 @@ def _spread_sideways(graph: Graph, nodes: dict[str, Block]) -> tuple[dict[str, i
 
 
 def _clash(one: Block, other: Block) -> bool:
-    return one.y - one.up < other.y + other.down + ROOM and other.y - other.up < one.y + one.down + ROOM
+    room = NAME_ROOM if isinstance(one, JunctionBlock) and isinstance(other, JunctionBlock) else ROOM
+    return one.y - one.up < other.y + other.down + room and other.y - other.up < one.y + one.down + room
 
 
 def _place_lines(graph: Graph, nodes: dict[str, Block], lines: dict[str, LineBlock]) -> None:
@@ -175,6 +177,8 @@ def _place_columns(
     for index, key in enumerate(order):
         left, right = halves[index]
         for block in columns[key]:
+            if isinstance(block, (LineBlock, PumpBlock)):  # ports in line, so that risers share a lane
+                block.left, block.right = left, right
             block.x = round(x + left, 3)
             block.y = round(block.y, 3)
         x += left + right + (gaps[index] + spare if index < len(gaps) else 0.0)

@@ -22,7 +22,7 @@ from calcpack.drawings.symbols import INLINE, arrow_head
 from calcpack.drawings.tank_block import TankBlock, level_mark
 from calcpack.drawings.words import ROW, Words
 
-_HEIGHT = 6.4  # mm, height of one legend row
+_HEIGHT = 7.0  # mm, height of one legend row
 _SHAPE = 8.6  # mm for the symbol
 _PAD = 1.2
 _HEADING = Words("Symbols used (shapes in the manner of ISO 10628-2)")
@@ -55,7 +55,7 @@ def legend_entries(blocks: Iterable[Block], tees: Sequence[Point]) -> list[Legen
     if any(pump.running for pump in pumps):
         entries.append(LegendEntry("centrifugal pump, running", lambda svg, x, y: draw_pump(svg, x, y, 1, False, 2.4)))
     if any(pump.running < pump.units for pump in pumps):
-        entries.append(LegendEntry("pump, standing by", lambda svg, x, y: draw_pump(svg, x, y, 1, True, 2.4)))
+        entries.append(LegendEntry("pump, not running", lambda svg, x, y: draw_pump(svg, x, y, 1, True, 2.4)))
     for key, symbol in INLINE.items():
         if key in used:
             entries.append(LegendEntry(symbol.title, _inline(key)))

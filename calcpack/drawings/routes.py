@@ -16,10 +16,14 @@ STUB = 1.0  # mm straight out of a port
 CLEAR = 0.9  # mm kept to every block
 BEND = 6.0  # costs in mm of detour
 CROSSING = 14.0
-BESIDE = 3.0  # per mm on a foreign line
+BESIDE = 3.0  # per mm on a foreign line or closer to it than APART
+APART = 1.4  # mm
 BLOCKED = 400.0  # per step through a block: only when there is no other way
 RISER_AGAIN = 0.8  # per mm on a vertical lane that the same node uses elsewhere
 SHARED = 0.4  # per mm along a line of the same node: they leave it as one header
+
+PASSES = 2
+_NOBODY: tuple[str, ...] = ()
 
 Port = tuple[Point, tuple[Point, ...]]
 
@@ -31,6 +35,7 @@ class Router:
         points = list(ports)
         self.xs = _lanes(area.x0, area.x1, [x for x, _ in points])
         self.ys = _lanes(area.y0, area.y1, [y for _, y in points])
+        self._near = (_neighbours(self.xs), _neighbours(self.ys))
         self._blocked: dict[tuple[int, int], set[str]] = {}
         for tag, box in obstacles.items():
             grown = box.grown(CLEAR)
@@ -42,21 +47,34 @@ class Router:
                         break
                     if grown.holds(self.xs[i], self.ys[j]):
                         self._blocked.setdefault((i, j), set()).add(tag)
-        self._risers: dict[str, set[int]] = {}  # node -> vertical lanes that its lines use
-        self._used: dict[tuple, set[str]] = {}  # undirected step -> nodes whose lines run there
-        self._passed: dict[tuple[int, int], set[str]] = {}
+        self._risers: dict[tuple[str, int], int] = {}  # (node, vertical lane) -> steps of the node on it
+        self._used: dict[tuple, list[str]] = {}  # undirected step -> nodes whose legs run there, one each
+        self._passed: dict[tuple[int, int], list[str]] = {}
 
-    def route(self, start: Port, goal: Port, node: str) -> list[Point]:
-        """Corner points from ``start`` to ``goal``; ``node`` names the item whose lines may run together."""
+    def route_all(self, legs: Sequence[tuple[str, Port, Port]]) -> list[list[Point]]:
+        """Corner points of every leg (node, start, goal); legs of one node may run together.
+
+        Legs are routed in turn, then each once more among all the others: an early one may stand in the way.
+        """
+        cells = [self._route(start, goal, node) for node, start, goal in legs]
+        for _ in range(PASSES):
+            for index, (node, start, goal) in enumerate(legs):
+                self._forget(cells[index], node)
+                cells[index] = self._route(start, goal, node)
+        return [
+            _corners([start[0], *((self.xs[i], self.ys[j]) for i, j in found), goal[0]])
+            for found, (_, start, goal) in zip(cells, legs, strict=True)
+        ]
+
+    def _route(self, start: Port, goal: Port, node: str) -> list[tuple[int, int]]:
         starts = [(*self._cell(_out(start[0], way, len(start[1]))), ANYWHERE.index(way)) for way in start[1]]
         goals = {
             (*self._cell(_out(goal[0], way, len(goal[1]))), ANYWHERE.index((-way[0], -way[1]))) for way in goal[1]
         }
         through = node if len(start[1]) > 1 or len(goal[1]) > 1 else ""
         cells = self._search(starts, goals, node, through)
-        points = [start[0], *((self.xs[i], self.ys[j]) for i, j in cells), goal[0]]
         self._book(cells, node)
-        return _corners(points)
+        return cells
 
     def _search(self, starts: Sequence[tuple], goals: set[tuple], node: str, through: str) -> list[tuple[int, int]]:
         targets = [(self.xs[i], self.ys[j]) for i, j, _ in goals]
@@ -107,23 +125,40 @@ class Router:
             if not (0 <= a < len(self.xs) and 0 <= b < len(self.ys)):
                 continue
             length = abs(self.xs[a] - self.xs[i]) + abs(self.ys[b] - self.ys[j])
-            price = length * RISER_AGAIN if dx == 0 and i in self._risers.get(node, ()) else length
+            price = length
             users = self._used.get(_step((i, j), (a, b)))
             if users:
-                price = SHARED * length if node in users else length * BESIDE + BLOCKED
-            elif (passing := self._passed.get((a, b))) and node not in passing:
-                price += CROSSING
+                price = SHARED * length if users.count(node) == len(users) else length * BESIDE + BLOCKED
+            else:
+                passing = self._passed.get((a, b), _NOBODY)
+                if passing.count(node) < len(passing):
+                    price += CROSSING
+                if dx == 0 and self._risers.get((node, i)):
+                    price *= RISER_AGAIN
+            for lane in self._near[0][i] if dx == 0 else self._near[1][j]:
+                beside = _step((lane, j), (lane, b)) if dx == 0 else _step((i, lane), (a, lane))
+                others = self._used.get(beside, _NOBODY)
+                if others.count(node) < len(others):
+                    price += length * BESIDE
             if self._blocked.get((a, b), set()) - {through}:
                 price += BLOCKED
             yield (a, b, turn), price
 
     def _book(self, cells: Sequence[tuple[int, int]], node: str) -> None:
         for one, other in pairwise(cells):
-            self._used.setdefault(_step(one, other), set()).add(node)
+            self._used.setdefault(_step(one, other), []).append(node)
             if one[0] == other[0]:
-                self._risers.setdefault(node, set()).add(one[0])
+                self._risers[node, one[0]] = self._risers.get((node, one[0]), 0) + 1
         for cell in cells:
-            self._passed.setdefault(cell, set()).add(node)
+            self._passed.setdefault(cell, []).append(node)
+
+    def _forget(self, cells: Sequence[tuple[int, int]], node: str) -> None:
+        for one, other in pairwise(cells):
+            self._used[_step(one, other)].remove(node)
+            if one[0] == other[0]:
+                self._risers[node, one[0]] -= 1
+        for cell in cells:
+            self._passed[cell].remove(node)
 
     def _cell(self, point: Point) -> tuple[int, int]:
         return _nearest(self.xs, point[0]), _nearest(self.ys, point[1])
@@ -151,6 +186,12 @@ def _lanes(low: float, high: float, exact: Sequence[float]) -> list[float]:
         if all(abs(kept[k] - lane) > 0.8 for k in (near - 1, near) if 0 <= k < len(kept)):
             kept.insert(near, lane)
     return kept
+
+
+def _neighbours(lanes: Sequence[float]) -> list[list[int]]:
+    """For every lane the lanes too near to tell lines on them apart."""
+    return [[k for k in (i - 2, i - 1, i + 1, i + 2) if 0 <= k < len(lanes) and abs(lanes[k] - lane) < APART]
+            for i, lane in enumerate(lanes)]  # fmt: skip
 
 
 def _nearest(values: Sequence[float], value: float) -> int:

@@ -10,7 +10,7 @@ from itertools import pairwise
 
 from calcpack.drawings.blocks import BRANCH_RADIUS, Block, JunctionBlock
 from calcpack.drawings.elevation_scale import ElevationScale
-from calcpack.drawings.free_space import free_rectangle, name_place
+from calcpack.drawings.free_space import free_rectangle, leader_end, name_place
 from calcpack.drawings.geometry import Box, around, segment_box
 from calcpack.drawings.items import Items
 from calcpack.drawings.layout import Graph, Placed, graph_of, place
@@ -28,7 +28,8 @@ WIDTH = 170.0  # mm, between the margins of an A4 sheet
 AXIS = 15.0  # mm for the elevation axis
 HEIGHTS = (62.0, 70.0, 76.0, 82.0, 90.0, 100.0, 112.0)  # mm of elevation axis to choose from
 MARGIN = 1.0
-TICK_PITCH = 8.0  # mm, ticks of the axis are at least so far apart
+TICK_PITCH = 6.5  # mm, ticks of the axis are at least so far apart
+LEADER_FROM = 3.5  # mm, a name farther than this from its node gets a leader
 LEGEND_COLUMNS = (4, 3, 2, 5, 1)  # inside the drawing, in order of liking
 
 
@@ -52,7 +53,7 @@ def _fitted(
     for height in HEIGHTS:
         items = Items(project, ledger, labels, graph, height)
         placed = place(graph, items.node_blocks(), items.line_blocks(), items.crest_blocks(), WIDTH - AXIS - 2 * MARGIN)
-        trouble = 30.0 * placed.crowded + 12.0 * len(items.scale.stretched) + _astray(graph, placed)
+        trouble = 30.0 * placed.crowded + 12.0 * len(items.scale.stretched) + 2.0 * _astray(graph, placed)
         tried.append((trouble + height / 2, placed, items.scale))
     _, placed, scale = min(tried, key=lambda one: one[0])
     return placed, scale
@@ -128,9 +129,9 @@ class _Drawing:
             with svg.group("item", block.tag):
                 block.draw(svg)
         for box, rows, (x, y) in names:
-            near = (min(max(x, box.x0), box.x1), min(max(y, box.y0), box.y1))
-            if abs(near[0] - x) + abs(near[1] - y) > 3.5:
-                svg.line(x, y, *near, width=HAIR)
+            end = leader_end(x, y, box)
+            if abs(end[0] - x) + abs(end[1] - y) > LEADER_FROM:
+                svg.line(x, y, *end, width=HAIR)
             set_rows(svg, rows, box.x0, box.y0)
 
     def _axis(self, svg: Svg, frame: Box) -> None:

@@ -23,13 +23,11 @@ def wire(graph: Graph, placed: Placed, system: System) -> dict[str, list[list[Po
     points = [point for _, _, one, other in legs for port in (one, other) for point in stub_end(port)]
     area = around([block.box for block in blocks.values()]).grown(EDGE)
     router = Router(area, {block.tag: block.box for block in blocks.values()}, points)
-    found: dict[int, list[Point]] = {}
-    for index in sorted(range(len(legs)), key=lambda k: (_detour(legs[k]), legs[k][0], k)):
-        _, node, start, goal = legs[index]
-        found[index] = [(round(x, 3), round(y, 3)) for x, y in router.route(start, goal, node)]
+    order = sorted(range(len(legs)), key=lambda k: (_detour(legs[k]), legs[k][0], k))
+    found = dict(zip(order, router.route_all([legs[index][1:] for index in order]), strict=True))
     routes: dict[str, list[list[Point]]] = {line: [] for line in placed.lines}
     for index, leg in enumerate(legs):
-        routes[leg[0]].append(found[index])
+        routes[leg[0]].append([(round(x, 3), round(y, 3)) for x, y in found[index]])
     return routes
 
 

@@ -66,9 +66,11 @@ OPERATORS: dict[type, str] = {ast.Add: "+", ast.Sub: "-", ast.Mult: "*", ast.Div
 
 
 def _power(base, exponent):
-    """``base ** exponent``; a root of a negative number has no value (Python alone would turn complex)."""
+    """``base ** exponent``, refused where Python would turn complex: a root of a negative number."""
     result = base**exponent
-    return math.nan if isinstance(result, complex) else result
+    if isinstance(result, complex):
+        raise ArithmeticError(f"{base!r}**{exponent!r} is not real")
+    return result
 
 
 _APPLY: dict[str, Callable] = {
@@ -194,7 +196,7 @@ def summed_terms(node: Node) -> Iterator[Node]:
 def evaluate(node: Node, values: Mapping[str, object]):
     """Value of the tree with ``values``: floats or arrays that broadcast; a list operand is a list or tuple of them.
 
-    Python floats follow Python (a division by zero raises ZeroDivisionError), arrays follow numpy.
+    Python floats raise ArithmeticError (division by zero, root of a negative number), arrays follow numpy.
     """
     match node:
         case Number(value, _):

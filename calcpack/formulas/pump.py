@@ -84,9 +84,10 @@ SPECIFIC_ENERGY = formula(
 )
 
 ANNUAL_HOURS = formula(
-    "pump.annual_hours", "Running time in a year", "t_y = t_d * n_d",
-    t_y="hours", t_d="hours", n_d="count",
-    source="DEFINITION", locator="running time of a day, days of operation", valid={"n_d": (0.0, 366.0)},
+    "pump.annual_hours", "Running time in a year", "t_y = t_d * (n_d / t_1)",
+    t_y="hours", t_d="hours", n_d="days", t_1="days",
+    source="DEFINITION", locator="running time of a day, days of operation", note="with t_1 one day",
+    valid={"n_d / t_1": (0.0, 366.0)},
 )
 
 ANNUAL_ENERGY = formula(

@@ -75,7 +75,7 @@ class FittedCurve:
         piece = np.searchsorted(breaks, flow, side="right")
         return coefficients[piece], flow - origins[piece]
 
-    @property
+    @cached_property
     def droops(self) -> bool:
         """True when the curve rises with flow somewhere inside its data (a head curve may then be met twice)."""
         flow = np.linspace(self.flow_min, self.flow_max, 401)

@@ -111,11 +111,12 @@ def _reverse_flow(solved: Solved) -> Iterator[tuple[int, Finding]]:
 def _critical_zone(solved: Solved) -> Iterator[tuple[int, Finding]]:
     _, reynolds, factor = solved.line_state
     inside = (reynolds > LAMINAR_LIMIT) & (reynolds < TURBULENT_LIMIT) & np.isnan(solved.net.friction_factor)
-    for i, b in zip(*np.nonzero(inside), strict=True):
-        turbulent = solve_colebrook(solved.net.roughness[i, b], reynolds[i, b])
-        tag, used = solved.topology.lines[i], solved.said(factor[i, b], "friction_factor")
+    turbulent = solve_colebrook(solved.net.roughness[inside], reynolds[inside])
+    for i, b, upper in zip(*np.nonzero(inside), turbulent, strict=True):
+        tag, re = solved.topology.lines[i], solved.said(reynolds[i, b], "reynolds_number")
+        used, other = (solved.said(f, "friction_factor") for f in (factor[i, b], upper))
         text = (
-            f"Reynolds number {solved.said(reynolds[i, b], 'reynolds_number')} in {tag} lies between laminar and "
-            f"turbulent: friction factor uncertain, {used} used, {solved.said(turbulent, 'friction_factor')} if turbulent."
+            f"Reynolds number {re} in {tag} lies between laminar and turbulent flow: friction factor uncertain, "
+            f"{used} used, {other} if turbulent."
         )
         yield b, Finding("critical-zone", tag, text)

@@ -57,7 +57,7 @@ class Elimination:
     def solve(self, ground: np.ndarray, pairs: np.ndarray, right: np.ndarray) -> np.ndarray:
         """Heads (unknowns, B) that drive the flows ``right`` (unknowns, B) out of the network at its fixed heads.
 
-        ``ground`` (unknowns, B) is the conductance of each node to fixed heads, ``pairs`` (pairs, B) that between nodes.
+        ``ground`` (unknowns, B) is the conductance of each node to fixed heads, ``pairs`` (pairs, B) that among nodes.
         """
         to_fixed, x = ground.copy(), right.copy()
         between = np.zeros((self._entries, ground.shape[1]))

@@ -11,7 +11,7 @@ Supply, 1988 (from memory, not seen).
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, fields
 
 import numpy as np
 
@@ -58,14 +58,15 @@ class _Search:
     head: np.ndarray
     fresh: np.ndarray  # continuity does not hold yet: the next step is taken whole
     rounds: np.ndarray
-    best: np.ndarray
-    idle: np.ndarray
+    best: np.ndarray  # smallest change to come so far
+    stalled: np.ndarray  # iterations since it last halved
+    idle: np.ndarray  # unknown nodes without an open link
 
     def take(self, keep: np.ndarray) -> None:
-        """Drop the blocks outside ``keep`` (numbers of columns)."""
+        """Keep only the blocks ``keep`` (numbers of columns)."""
         self.net = self.net.take(keep)
-        for name in ("blocks", "flow", "state", "present", "dead", "head", "fresh", "rounds", "best", "idle"):
-            setattr(self, name, np.take(getattr(self, name), keep, axis=-1))
+        for field in fields(self)[1:]:
+            setattr(self, field.name, np.take(getattr(self, field.name), keep, axis=-1))
 
 
 def solve(net: Network, flow: np.ndarray | None = None) -> Result:
@@ -82,6 +83,7 @@ def solve(net: Network, flow: np.ndarray | None = None) -> Result:
     search = _Search(
         net, np.arange(blocks), np.where(present, flow, 0.0), present.astype(np.int8), present, dead, known,
         np.ones(blocks, dtype=bool), np.zeros(blocks, dtype=int), np.full(blocks, np.inf), np.zeros(blocks, dtype=int),
+        _idle(net, present, dead),
     )
     out = Result(
         np.zeros((count, blocks)), np.zeros((count, blocks), dtype=np.int8), np.full(net.demand.shape, np.nan),
@@ -106,7 +108,7 @@ def solve(net: Network, flow: np.ndarray | None = None) -> Result:
         if changed.any():
             law = laws.losses(search.net, search.flow, search.state)
         if done.any():
-            _store(search, done, iteration, out)
+            _store(search, law, done, iteration, out)
             keep = np.flatnonzero(~done)
             if not len(keep):
                 break
@@ -115,24 +117,24 @@ def solve(net: Network, flow: np.ndarray | None = None) -> Result:
     return out
 
 
+def _idle(net: Network, is_open: np.ndarray, dead: np.ndarray) -> np.ndarray:
+    """Unknown nodes that no open link touches, or that are dead, (unknowns, B)."""
+    touched = net.topology.sum_at_nodes(is_open, is_open) > 0
+    return (~touched | dead)[net.topology.unknown]
+
+
 def _step(search: _Search, solver, law: tuple[np.ndarray, np.ndarray]) -> tuple[np.ndarray, np.ndarray]:
     """One Newton step of every block, cut where it overshoots; returns losses and slopes at the new flows."""
     topology = search.net.topology
     head_loss, slope = law
-    is_open = search.state != 0
-    conductance = np.where(is_open, 1.0 / slope, 0.0)
-    residual = head_loss - topology.drop(search.head)
-    pull = conductance * residual
-    excess = topology.sum_at_nodes(-search.flow, search.flow) - search.net.demand
+    conductance = np.where(search.state != 0, 1.0 / slope, 0.0)
+    pull = conductance * (head_loss - topology.drop(search.head))
+    flow = search.flow - pull
     unknown = topology.unknown
-    fixed = topology.fixed[:, None]
-    touched = topology.sum_at_nodes(conductance, conductance)[unknown] > 0
-    ground = topology.sum_at_nodes(
-        np.where(fixed[topology.end], conductance, 0.0), np.where(fixed[topology.start], conductance, 0.0)
-    )[unknown]
-    right = (excess + topology.sum_at_nodes(pull, -pull))[unknown]
-    idle = ~touched | search.dead[unknown]  # nothing to balance there: the head stays
-    ground, right = np.where(idle, 1.0, ground), np.where(idle, 0.0, right)
+    right = (topology.sum_at_nodes(-flow, flow) - search.net.demand)[unknown]
+    ground = topology.sum_to_fixed(conductance)
+    ground[search.idle] = 1.0  # nothing to balance there: the head stays
+    right[search.idle] = 0.0
     change = np.zeros(search.head.shape)
     if len(unknown):
         change[unknown] = solver.solve(ground, topology.sum_at_pairs(conductance), right)
@@ -178,20 +180,21 @@ def _smallest_change(net: Network, flow: np.ndarray) -> np.ndarray:
 def _balanced(search: _Search, law: tuple[np.ndarray, np.ndarray]) -> np.ndarray:
     """Which blocks (B,) are balanced as well as rounding allows."""
     net = search.net
-    is_open = search.state != 0
-    residual = np.abs(np.where(is_open, law[0] - net.topology.drop(search.head), 0.0))
+    residual = np.abs(np.where(search.state != 0, law[0] - net.topology.drop(search.head), 0.0))
     to_come = np.sum(residual / law[1], axis=0)
     small = _smallest_change(net, search.flow)
     energy = np.max(residual, axis=0, initial=0.0)
     limit = ENERGY_TOLERANCE * (1.0 + np.max(np.abs(search.head), axis=0, initial=0.0))
-    excess = net.topology.sum_at_nodes(-search.flow, search.flow) - net.demand
-    excess = np.where(search.dead, 0.0, excess)[net.topology.unknown]
-    balanced = (to_come <= small) & (energy <= limit) & (np.max(np.abs(excess), axis=0, initial=0.0) <= small)
+    balanced = (to_come <= small) & (energy <= limit)
+    if balanced.any():
+        excess = net.topology.sum_at_nodes(-search.flow, search.flow) - net.demand
+        excess = np.where(search.dead, 0.0, excess)[net.topology.unknown]
+        balanced &= np.max(np.abs(excess), axis=0, initial=0.0) <= small
     better = to_come < 0.5 * search.best
     search.best = np.where(better, to_come, search.best)
-    search.idle = np.where(better, 0, search.idle + 1)
+    search.stalled = np.where(better, 0, search.stalled + 1)
     # Rounding of large heads over very small slopes can keep the change from falling further.
-    return balanced | ((search.idle >= 6) & (to_come <= 1e3 * small) & (energy <= ACCEPTED_ENERGY))
+    return balanced | ((search.stalled >= 6) & (to_come <= 1e3 * small) & (energy <= ACCEPTED_ENERGY))
 
 
 def _review(search: _Search, balanced: np.ndarray) -> np.ndarray:
@@ -219,21 +222,22 @@ def _review(search: _Search, balanced: np.ndarray) -> np.ndarray:
     search.rounds[changed] += 1
     search.fresh[changed] = True
     search.best[changed] = np.inf
-    search.idle[changed] = 0
+    if changed.any():
+        search.idle = _idle(search.net, search.state != 0, search.dead)
+    search.stalled[changed] = 0
     return changed
 
 
-def _store(search: _Search, done: np.ndarray, iteration: int, out: Result) -> None:
-    """Write finished blocks to the result, tiny flows as zero, residuals as they are then."""
+def _store(search: _Search, law: tuple[np.ndarray, np.ndarray], done: np.ndarray, iteration: int, out: Result) -> None:
+    """Write finished blocks to the result, tiny flows as zero, with the residuals that remain."""
     columns = np.flatnonzero(done)
     net, at = search.net.take(columns), search.blocks[columns]
     state, dead, head = search.state[:, columns], search.dead[:, columns], search.head[:, columns]
     flow = search.flow[:, columns]
     flow = np.where(np.abs(flow) <= SPEED_TOLERANCE * valves.area_of_links(net), 0.0, flow)
     topology = net.topology
-    excess = topology.sum_at_nodes(-flow, flow) - net.demand
-    excess = np.where(dead, 0.0, excess)[topology.unknown]
-    residual = np.where(state != 0, laws.losses(net, flow, state)[0] - topology.drop(head), 0.0)
+    excess = np.where(dead, 0.0, topology.sum_at_nodes(-flow, flow) - net.demand)[topology.unknown]
+    residual = np.where(state != 0, law[0][:, columns] - topology.drop(head), 0.0)
     continuity = np.max(np.abs(excess), axis=0, initial=0.0)
     energy = np.max(np.abs(residual), axis=0, initial=0.0)
     throughput = np.max(np.abs(flow), axis=0, initial=0.0) + np.max(np.abs(net.demand), axis=0, initial=0.0)

@@ -2,8 +2,6 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-
 import numpy as np
 
 from calcpack.formulas.fittings import EQUIPMENT_QUADRATIC, LOCAL_HEAD
@@ -16,42 +14,22 @@ from calcpack.hydraulics.solution import CaseSolution, Convergence, LineFlow, Pu
 from calcpack.project.model import Case, Line
 
 
-@dataclass(frozen=True, eq=False)
-class _Losses:
-    """Parts of the head losses of the lines as nested lists [line][block]."""
-
-    velocity: list
-    reynolds: list
-    factor: list
-    friction: list
-    local: list
-
-
 def case_solutions(group: Group, result: Result, units: str) -> dict[str, CaseSolution]:
     """The solution of every case of ``group`` by case id; ``units`` is the unit system of finding texts."""
     net, topology = group.network, group.network.topology
     count = len(topology.lines)
-    flow = result.flow[:count]
-    parts = _losses(group, flow)
-    flows, state, pump_flow = flow.tolist(), result.state[:count].tolist(), result.flow[count:]
+    flow, pump_flow = result.flow[:count], result.flow[count:]
     each = pump_flow / np.maximum(net.running, 1.0)
     head = np.where(net.running > 0, net.curves.evaluate(each)[0], 0.0)
-    shut = (result.state[:count] == 0) & ~result.dead[topology.start[:count]]
+    is_open = (result.state[:count] != 0) | result.dead[topology.start[:count]]
+    columns = [part.T for part in (*_losses(group, flow), is_open, result.state[:count])]
     findings = find(group, result, units)
     made = {}
     for b, case in enumerate(group.cases):
+        rows = zip(*(column[b].tolist() for column in columns), strict=True)
         lines = {
-            tag: LineFlow(
-                flow=flows[i][b],
-                velocity=parts.velocity[i][b],
-                reynolds=parts.reynolds[i][b],
-                friction_factor=parts.factor[i][b],
-                friction_head=parts.friction[i][b],
-                local_head=parts.local[i][b],
-                equipment_head=_equipment(case, line, flows[i][b], state[i][b]) if line.equipment else {},
-                open=not shut[i, b],
-            )
-            for i, (tag, line) in enumerate(case.system.lines.items())
+            line.tag: LineFlow(*row[:6], _equipment(case, line, row[0], row[7]) if line.equipment else {}, row[6])
+            for line, row in zip(case.system.lines.values(), rows, strict=True)
         }
         pumps = {
             tag: PumpDuty(float(each[p, b]), float(pump_flow[p, b]), float(head[p, b]), int(net.running[p, b]))
@@ -73,14 +51,15 @@ def case_solutions(group: Group, result: Result, units: str) -> dict[str, CaseSo
     return made
 
 
-def _losses(group: Group, flow: np.ndarray) -> _Losses:
+def _losses(group: Group, flow: np.ndarray) -> tuple[np.ndarray, ...]:
+    """Flow, velocity, Reynolds number, friction factor, friction and local head of the lines, each (lines, B)."""
     net = group.network
     speed, reynolds, factor = laws.line_factors(net, flow)
     sign = np.sign(flow)
     known = np.where(speed > 0, factor, 0.0)
     friction = sign * FRICTION_HEAD.evaluate(f=known, L=net.length, D=net.bore, V=speed, g=net.gravity)
     local = sign * LOCAL_HEAD.evaluate(K=net.local, V=speed, g=net.gravity)
-    return _Losses(*(part.tolist() for part in (sign * speed, reynolds, factor, friction, local)))
+    return flow, sign * speed, reynolds, factor, friction, local
 
 
 def _equipment(case: Case, line: Line, flow: float, state: int) -> dict[str, float]:

@@ -252,10 +252,10 @@ class Ledger:
         if not number:
             return DEFAULT_DIGITS
         digits, kind = digits_written(number.group()), KINDS[value.kind]
-        units = {kind.display_unit(self.system), kind.coherent_unit(self.system)}
-        for unit in units:
-            if not unit.offset and not math.isclose(round_significant(unit.from_si(value.si), digits),
-                                                    unit.from_si(value.si), rel_tol=1e-12):
+        shown, coherent = kind.display_unit(self.system), kind.coherent_unit(self.system)
+        for unit in (shown,) if shown.offset else (shown, coherent):  # kelvins are not what a temperature prints in
+            printed = unit.from_si(value.si)
+            if not math.isclose(round_significant(printed, digits), printed, rel_tol=1e-12):
                 return max(digits, DEFAULT_DIGITS)
         return digits
 

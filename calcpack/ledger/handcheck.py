@@ -5,7 +5,7 @@ from __future__ import annotations
 import math
 from dataclasses import dataclass
 
-from calcpack.digits import MAX_DIGITS, last_digit, round_significant
+from calcpack.digits import DEFAULT_DIGITS, MAX_DIGITS, exponent_of, last_digit, round_significant
 from calcpack.formulas import Formula
 from calcpack.formulas.formula import LIST
 from calcpack.ledger.book import Ledger, formula_of
@@ -56,6 +56,7 @@ def settle_digits(ledger: Ledger) -> HandCheck:
         for entry in lines:
             while deviation(ledger, entry) > 1.0 and _widen(ledger, entry, widened):
                 changed = True
+        changed |= _align(ledger)
     worst, worst_id, failed = 0.0, "", []
     for entry in lines:
         share = deviation(ledger, entry)
@@ -64,6 +65,30 @@ def settle_digits(ledger: Ledger) -> HandCheck:
         if share > worst:
             worst, worst_id = share, entry.id
     return HandCheck(len(lines), len(widened), tuple(failed), worst, worst_id)
+
+
+def _align(ledger: Ledger) -> bool:
+    """Print the same quantity of several cases to the same decimal place: columns of a table then line up.
+
+    Digits only grow: the place is that of the largest member, one digit finer where another has fewer digits before
+    the point. Returns True when any entry changed.
+    """
+    families: dict[str, list[Entry]] = {}
+    for entry in ledger.of_origin(APPLIED, SOLVED):
+        if entry.case and entry.value and math.isfinite(entry.value):
+            families.setdefault(entry.id.replace(f"@{entry.case}", ""), []).append(entry)
+    changed = False
+    for family in families.values():
+        unit = KINDS[family[0].kind].display_unit(ledger.system)
+        exponents = {id(entry): exponent_of(unit.from_si(entry.value), entry.digits) for entry in family}
+        highest = max(exponents.values())
+        digits = max(entry.digits for entry in family if exponents[id(entry)] == highest)
+        digits = min(digits, DEFAULT_DIGITS) + (min(exponents.values()) < highest)
+        for entry in family:
+            wanted = min(digits + exponents[id(entry)] - highest, MAX_DIGITS)
+            if wanted > entry.digits:
+                entry.digits, changed = wanted, True
+    return changed
 
 
 def deviation(ledger: Ledger, entry: Entry) -> float:
@@ -77,11 +102,11 @@ def deviation(ledger: Ledger, entry: Entry) -> float:
     left, redone, scale = formula.evaluate_as_printed(printed)
     tolerance = 0.0 if formula.unknown or not left else last_digit(left, entry.digits)
     resolution = NOISE if any(_can_grow(ledger, *one) for one in _operands(ledger, entry, formula)) else NINE_DIGITS
-    allowed = max(tolerance, TOLERANCE * abs(left), resolution * scale)
+    allowed = max(tolerance, TOLERANCE * abs(left)) + resolution * scale
     difference = abs(redone - left)
-    if not math.isfinite(difference) or not math.isfinite(allowed):
-        return math.inf
-    return difference / allowed if difference else 0.0
+    if difference == 0.0:
+        return 0.0
+    return difference / allowed if allowed and math.isfinite(difference) and math.isfinite(allowed) else math.inf
 
 
 def _printed_operands(ledger: Ledger, entry: Entry, formula: Formula) -> dict[str, float | list[float]]:

@@ -53,8 +53,10 @@ def place_name(path: str) -> str:
     else:
         head, rest = "", parts[1:]
     words = [head] if head else []
-    for part in rest:
-        if part.isdecimal() and words:
+    for before, part in zip(["", *rest], rest, strict=False):
+        if part.isdecimal() and before.isdecimal():
+            words.append(f"number {int(part) + 1}")
+        elif part.isdecimal() and words:
             words[-1] = f"{_ELEMENTS.get(words[-1], words[-1])} {int(part) + 1}"
         else:
             words.append(part)

@@ -149,7 +149,8 @@ def _parsed(text: str, stem: str, name: str, problems: list[Problem]) -> Section
         root = composer.document()
     except yaml.MarkedYAMLError as error:
         mark = error.problem_mark or error.context_mark
-        raise _ReadingError(mark.line + 1 if mark else 0, *_yaml_words(error)) from None
+        line = mark.line + 1 if mark else 0
+        raise _ReadingError(line, *_yaml_words(error, text.splitlines()[line - 1 : line])) from None
     except yaml.YAMLError:
         raise _ReadingError(0, "is not YAML text") from None
     if not isinstance(root.content, dict):
@@ -168,9 +169,10 @@ def _located(node: _Node, path: str, file: str) -> Raw:
     return raw
 
 
-def _yaml_words(error: yaml.MarkedYAMLError) -> tuple[str, str]:
+def _yaml_words(error: yaml.MarkedYAMLError, lines: list[str]) -> tuple[str, str]:
+    """What is wrong and what would be right; ``lines`` is the line of the mistake, if there is one."""
     problem = str(error.problem or error.context or "")
-    if "\\t" in problem or "tab" in problem:
+    if any(line.lstrip(" ").startswith("\t") for line in lines):
         return "a tab stands where YAML wants spaces", "indent with spaces"
     if "mapping values are not allowed" in problem:
         return "a second ': ' stands on this line", "put text that contains ': ' in quotes, or mend the indentation"

@@ -98,7 +98,7 @@ def figure(desk: Desk, block: Figure, key: tuple[str, int]) -> FigureView:
         svg = desk.figures[block.key]
     except KeyError:
         raise RenderError(f"no drawing {block.key!r} was handed over") from None
-    style = "plate" if block.full_page else ""
+    style = "plate" if block.full_page and key[1] else ""  # behind its heading it has the page to itself already
     return FigureView(
         desk.numbering.anchors.get((*key, 0), ""), desk.numbering.labels[key], desk.sentence(block.caption),
         desk.plain(block.alt), f"data:image/svg+xml;base64,{b64encode(svg.encode()).decode()}", style,

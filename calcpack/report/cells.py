@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import re
 from collections.abc import Callable
 from dataclasses import dataclass
 from html import escape
@@ -19,7 +18,7 @@ from calcpack.report.typeset import linked
 from calcpack.report.verdicts import verdict_html
 from calcpack.sheets.content import Cell, Column, Ref
 
-_DIGIT = re.compile(r"\d")
+NO_SPACE_BEFORE = tuple(",;.:)")
 
 
 @dataclass(frozen=True)
@@ -46,15 +45,15 @@ class Desk:
 
     def cell(self, cell: Cell, column: Column | None = None, here: str = "") -> Html:
         """The contents of a table cell. Raises RenderError for a number whose unit the column head does not name."""
-        shown = []
+        html = ""
         for part in parts(cell):
             if isinstance(part, str):
-                shown.append(number_html(part))
+                html += ("" if part[:1] in NO_SPACE_BEFORE else " ") + number_html(part)
                 continue
             if part.show == "number":
                 part = self._with_unit(part, column)
-            shown.append(self.show(part, here))
-        return Html(" ".join(shown))
+            html += " " + self.show(part, here)
+        return Html(html.strip())
 
     def sentence(self, text: str) -> Html:
         """Words with ``{entry id}`` and ``{entry id|show}`` put in."""
@@ -117,6 +116,10 @@ def _quantity(desk: Desk, entry: Entry) -> Html:
     return number_html(quantity_text(entry, unit_of(entry, desk.ledger.system)))
 
 
+def _equation(desk: Desk, entry: Entry) -> Html:
+    return Html(f"{symbol_html(entry.symbol)} = {_quantity(desk, entry)}")
+
+
 def _where(desk: Desk, entry: Entry) -> Html:
     home = desk.numbering.homes.get(entry.id)
     return Html(escape(home.label) if home else "")
@@ -131,9 +134,10 @@ SHOWS: dict[str, Callable[[Desk, Entry], Html]] = {
     "written": lambda desk, entry: number_html(entry.written),
     "verdict": lambda desk, entry: verdict_html(entry.verdict),
     "title": lambda desk, entry: number_html(entry.title),
+    "equation": _equation,
     "symbol": lambda desk, entry: symbol_html(entry.symbol),
     "status": lambda desk, entry: number_html(entry.status),
     "where": _where,
     "used": lambda desk, entry: desk.places(entry.id),
 }
-LINKED = ("number", "quantity", "choice", "where")
+LINKED = ("number", "quantity", "equation", "choice", "where")

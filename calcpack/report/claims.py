@@ -10,7 +10,7 @@ from calcpack.ledger import Ledger
 from calcpack.sheets.content import Block, Cell, Facts, Figure, Ref, Table, Verdicts
 
 PLACEHOLDER = re.compile(r"\{([^{}|]+)(?:\|([^{}|]+))?\}")
-SHOWS_NUMBER = ("number", "quantity", "choice", "written", "verdict")
+SHOWS_NUMBER = ("number", "quantity", "equation", "choice", "written", "verdict")
 SHOWS_ORIGIN = ("written", "source")
 
 # Ranks, best first.

@@ -76,7 +76,7 @@ def title_block(package: PackageContent) -> TitleBlockView:
 def _fields(document: Document) -> tuple[FieldView, ...]:
     named = (
         ("owner", document.owner), ("document number", document.number), ("document type", document.type),
-        ("revision", document.revision), ("date of issue", document.date), ("status", document.status),
+        ("revision", document.revision), ("date of issue", document.date),
         ("contract", document.contract), ("location", document.location), ("department", document.department),
         ("classification", document.classification), ("language", document.language),
     )

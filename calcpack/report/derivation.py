@@ -11,13 +11,13 @@ from calcpack.ledger import entry as origin
 from calcpack.ledger.handcheck import printed_unit
 from calcpack.ledger.text import NBSP, quantity_text, unit_of
 from calcpack.quantities import KINDS, Unit
-from calcpack.report.symbols import Html, number_html, number_width, symbol_html, symbol_width
+from calcpack.report.symbols import Html, number_html, number_width, symbol_html
 from calcpack.report.typeset import Link, Piece, linked, substituted, symbolic
 from calcpack.report.verdicts import verdict_html
 from calcpack.report.views import LineView
 
-COLUMN = 32.0  # em: width of the formula column of the style sheet, equals sign included
-EQUALS = 1.2  # em
+COLUMN = 32.6  # em: width of the formula column of the style sheet, equals sign included
+EQUALS = 1.06  # em, with its spaces
 RESIDUAL_DIGITS = 1
 
 
@@ -30,12 +30,12 @@ def lines(entry: Entry, ledger: Ledger, link: Link, *, boxed: bool) -> tuple[Lin
     if entry.origin == origin.CHECK:
         return (_check(entry, ledger, link),)
     if entry.origin == origin.SERIES:
-        return (LineView(symbol_html(entry.symbol), Html("plotted curve"), True),)
+        return (LineView(symbol_html(entry.symbol), Html(f"plotted curve of {len(entry.points)} points"), True),)
     if entry.choice and math.isnan(entry.value):
         return (LineView(Html(""), Html(f'<b class="r">{escape(entry.choice)}</b>'), True),)
     text = _result(entry, (unit_of(entry, ledger.system), KINDS[entry.kind].coherent_unit(ledger.system)), boxed)
     residual = _residual(entry) if entry.residual is not None else ""
-    return (LineView(symbol_html(entry.symbol), Html(text.html + residual), True),)
+    return (LineView(_equals(symbol_html(entry.symbol)), Html(text.html + residual), True),)
 
 
 def _applied(entry: Entry, ledger: Ledger, link: Link, boxed: bool) -> tuple[LineView, ...]:
@@ -45,10 +45,9 @@ def _applied(entry: Entry, ledger: Ledger, link: Link, boxed: bool) -> tuple[Lin
     _, in_numbers = substituted(formula, entry, ledger, link)
     units = (printed_unit(formula, formula.result, ledger.system), unit_of(entry, ledger.system))
     result = _result(entry, units, boxed)
-    first = symbol_width(entry.symbol)
-    if first + in_symbols.width + in_numbers.width + result.width + 3 * EQUALS <= COLUMN:
+    if in_symbols.width + in_numbers.width + result.width + 2 * EQUALS <= COLUMN:
         return (_line(symbol, in_symbols, in_numbers, result),)
-    if in_numbers.width + result.width + 2 * EQUALS <= COLUMN:
+    if in_numbers.width + EQUALS + result.width <= COLUMN:
         return (_line(symbol, in_symbols), _line(Html(""), in_numbers, result))
     return (_line(symbol, in_symbols), _line(Html(""), in_numbers), _line(Html(""), result))
 
@@ -62,7 +61,7 @@ def _implicit(entry: Entry, ledger: Ledger, link: Link, boxed: bool) -> tuple[Li
     result = _result(entry, units, boxed)
     return (
         _line(Html(left.html), right),
-        LineView(symbol_html(entry.symbol), Html(result.html + _residual(entry)), True),
+        LineView(_equals(symbol_html(entry.symbol)), Html(result.html + _residual(entry)), True),
         _line(Html(left_numbers.html), right_numbers),
     )
 
@@ -77,7 +76,7 @@ def _check(entry: Entry, ledger: Ledger, link: Link) -> LineView:
         linked(number_html(quantity_text(one, unit_of(one, ledger.system))), link(one.id)) for one in (value, limit)
     ]
     return LineView(
-        symbol_html(entry.symbol), Html(f"{texts[0]} {escape(entry.comparison)} {texts[1]}&emsp;{box}"), True
+        _equals(symbol_html(entry.symbol)), Html(f"{texts[0]} {escape(entry.comparison)} {texts[1]}&emsp;{box}"), True
     )
 
 
@@ -97,5 +96,9 @@ def _residual(entry: Entry) -> str:
 
 
 def _line(left: Html, *pieces: Piece) -> LineView:
-    width = sum(piece.width for piece in pieces) + EQUALS * len(pieces)
-    return LineView(left, Html(" = ".join(piece.html for piece in pieces)), width <= COLUMN)
+    width = sum(piece.width for piece in pieces) + EQUALS * (len(pieces) - 1)
+    return LineView(_equals(left), Html(" = ".join(piece.html for piece in pieces)), width <= COLUMN)
+
+
+def _equals(left: str) -> Html:
+    return Html(f"{left} =" if left else "=")

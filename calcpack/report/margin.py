@@ -2,8 +2,6 @@
 
 from __future__ import annotations
 
-from html import escape
-
 from calcpack.digits import digits_written, format_number
 from calcpack.formulas import FORMULAS, Formula
 from calcpack.formulas.expression import Symbol
@@ -13,9 +11,8 @@ from calcpack.ledger import entry as origin
 from calcpack.ledger.text import display_text
 from calcpack.quantities import KINDS, UNITS, Unit
 from calcpack.report.cells import Desk
-from calcpack.report.linear import expression
 from calcpack.report.symbols import Html, number_html, symbol_html
-from calcpack.report.typeset import linked
+from calcpack.report.typeset import inline, linked
 from calcpack.values import CONFIRMED
 
 
@@ -31,6 +28,8 @@ def notes(desk: Desk, entry: Entry) -> tuple[Html, ...]:
     if entry.formula:
         formula = FORMULAS[entry.formula]
         ranges = [range_html(formula, limits, desk.ledger.system) for limits in formula.valid]
+        if formula.is_empirical:
+            lines.append(_demanded_units(formula))
         if ranges:
             lines.append(Html(f"range: {', '.join(ranges)}"))
         lines.extend(_inputs(desk, entry))
@@ -51,7 +50,7 @@ def cautions(desk: Desk, entry: Entry) -> tuple[Html, ...]:
 
 def range_html(formula: Formula, limits: Range, system: str) -> Html:
     """A range of validity: ``Re ≥ 4000`` or ``0 ≤ ε / D ≤ 0.05``."""
-    subject = symbol_html(limits.tree.name) if isinstance(limits.tree, Symbol) else escape(expression(limits.tree))
+    subject = inline(limits.tree)
     unit = _unit_of_range(formula, limits, system)
     low, high = (None if bound is None else _bound(bound, unit) for bound in (limits.low, limits.high))
     if low is None:
@@ -59,6 +58,12 @@ def range_html(formula: Formula, limits: Range, system: str) -> Html:
     if high is None:
         return Html(f"{subject} ≥ {low}")
     return Html(f"{low} ≤ {subject} ≤ {high}")
+
+
+def _demanded_units(formula: Formula) -> Html:
+    """The units that the constants of an empirical formula demand."""
+    named = [f"{symbol_html(name)} in {number_html(unit)}" for name, unit in formula.units.items() if unit]
+    return Html(f"constants hold for {', '.join(named)}")
 
 
 def _unit_of_range(formula: Formula, limits: Range, system: str) -> tuple[Unit, Unit]:

@@ -56,17 +56,16 @@ def environment() -> jinja2.Environment:
 def render_html(package: PackageContent, ledger: Ledger, figures: dict[str, str]) -> str:
     """The package as one HTML document. Raises RenderError for what cannot be set, naming it and its place."""
     desk = Desk(ledger, number(package.sheets, ledger), figures)
-    pieces = [("the cover", _fill("cover.html", cover(package, desk)))]
-    pieces.append(("the contents list", _fill("contents.html", contents(package, desk))))
+    pieces = [("the cover", _fill(cover(package, desk)))]
+    pieces.append(("the contents list", _fill(contents(package, desk))))
     for sheet in package.sheets:
         if not sheet.omitted:
             pieces.append((f"sheet {desk.numbering.sheets[sheet.key]} {sheet.title}", render_sheet(sheet, desk)))
     document = package.document
     head = title_block(package)
-    pieces.append(("the title block", escape(" ".join(astuple(head)))))
+    pieces.append(("the head and foot of every sheet", escape(" ".join((*astuple(head), package.program, package.fingerprint)))))
     _require_glyphs([*pieces, *((f"drawing {key}", svg) for key, svg in figures.items())])
     return _fill(
-        "package.html",
         views.PackageView(
             language=document.language, title=f"{document.number} {document.title}", date=document.date,
             keywords=", ".join(filter(None, (document.project, document.type, document.number, document.status))),
@@ -82,8 +81,7 @@ def render_sheet(sheet: Sheet, desk: Desk) -> Html:
         sheet_anchor(sheet.key), desk.numbering.sheets[sheet.key], sheet.title,
         tuple(_section(section, desk) for section in sheet.sections),
     )
-    own = f"sheets/{sheet.key}.html"
-    return _fill(own if own in environment().list_templates() else "sheet.html", view)
+    return _fill(view, f"sheets/{sheet.key}.html")
 
 
 def _section(section: Section, desk: Desk) -> views.SectionView:
@@ -96,25 +94,26 @@ def _section(section: Section, desk: Desk) -> views.SectionView:
 def _block(block: Block, desk: Desk, key: tuple[str, int]) -> Html:
     match block:
         case Derivation():
-            return _fill("parts/derivation.html", blocks.derivation(desk, block, key))
+            return _fill(blocks.derivation(desk, block, key))
         case Table():
-            return _fill("parts/table.html", blocks.table(desk, block, key))
+            return _fill(blocks.table(desk, block, key))
         case Facts():
-            return _fill("parts/facts.html", blocks.facts(desk, block, key))
+            return _fill(blocks.facts(desk, block, key))
         case Verdicts():
-            return _fill("parts/verdicts.html", blocks.verdicts(desk, block, key))
+            return _fill(blocks.verdicts(desk, block, key))
         case Figure():
-            return _fill("parts/figure.html", blocks.figure(desk, block, key))
+            return _fill(blocks.figure(desk, block, key))
         case Prose(text=text, style=style):
-            return _fill("parts/prose.html", views.ProseView(style, desk.sentence(text)))
+            return _fill(views.ProseView(style, desk.sentence(text)))
         case Listing(caption=caption, text=text):
-            return _fill("parts/listing.html", views.ListingView(caption, text))
+            return _fill(views.ListingView(caption, text))
     raise RenderError(f"{type(block).__name__} is no block of a sheet")
 
 
-def _fill(template: str, view: object) -> Html:
-    name = next(name for name, of_class in CONTEXTS.values() if isinstance(view, of_class))
-    return Html(environment().get_template(template).render({name: view}))
+def _fill(view: object, *preferred: str) -> Html:
+    """The first of the ``preferred`` templates that exists, else the one declared for the view, filled with it."""
+    declared, name = next((path, name) for path, (name, of_class) in CONTEXTS.items() if type(view) is of_class)
+    return Html(environment().select_template([*preferred, declared]).render({name: view}))
 
 
 def _require_glyphs(pieces: Iterable[tuple[str, str]]) -> None:

@@ -22,6 +22,7 @@ from calcpack.report.fonts import ITALIC, REGULAR, width
 from calcpack.report.symbols import DRAWN_RAISED, SMALL, Html, number_html, number_width, symbol_html, symbol_width
 
 DOT = "·"
+GAP = "\u00a0"  # between the symbols of a product
 # How tightly a piece holds together, loosest first.
 SUM, SIGMA, PRODUCT, FRACTION, QUANTITY, ATOM = range(6)
 # Widths of the boxes of the style sheet, em.
@@ -69,8 +70,13 @@ def substituted(formula: Formula, entry: Entry, ledger: Ledger, link: Link) -> t
             ids = ids[index]
         return quantity(ledger[ids], printed_unit(formula, name, ledger.system), link)
 
-    setter = _Setter(leaf, lists={name: len(ids) for name, ids in (entry.operands or {}).items() if type(ids) is tuple})
+    setter = _Setter(leaf, {name: len(ids) for name, ids in (entry.operands or {}).items() if not isinstance(ids, str)})
     return setter.set(formula.equation.left), setter.set(formula.equation.right)
+
+
+def inline(node: Node) -> Html:
+    """An expression in symbols that stays inside a line of text: a fraction is written with a stroke."""
+    return Html(_in_line(_Setter(lambda name, _: Piece(symbol_html(name), symbol_width(name))), node).html)
 
 
 def quantity(entry: Entry, unit: Unit, link: Link) -> Piece:
@@ -192,7 +198,7 @@ def _factors(node: Node) -> list[Node]:
 
 
 def _product(factors: list[Piece], *, written_out: bool) -> Piece:
-    """Numbers are joined by a half-high dot, everything else by a thin space."""
+    """Numbers are joined by a half-high dot, everything else by a space."""
     last = len(factors) - 1
     for place, factor in enumerate(factors):
         reaches_on = factor.level == SIGMA and place < last  # else it would seem to sum what follows
@@ -201,8 +207,8 @@ def _product(factors: list[Piece], *, written_out: bool) -> Piece:
     html, total = factors[0].html, factors[0].width
     for before, after in zip(factors, factors[1:], strict=False):
         dotted = written_out or (before.numeric and after.numeric)
-        html += (f" {DOT} " if dotted else THIN_SPACE) + after.html
-        total += (0.75 if dotted else 0.2) + after.width
+        html += (f" {DOT} " if dotted else GAP) + after.html
+        total += (0.75 if dotted else 0.25) + after.width
     return Piece(
         html, total, PRODUCT, any(factor.tall for factor in factors), all(factor.numeric for factor in factors),
         factors[0].minus,

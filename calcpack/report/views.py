@@ -9,7 +9,7 @@ from calcpack.report.symbols import Html
 
 @dataclass(frozen=True)
 class LineView:
-    """``left = right``; a line that fits its column is not broken."""
+    """``left`` ends in the equals sign; a line that fits its column is not broken."""
 
     left: Html
     right: Html

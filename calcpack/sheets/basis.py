@@ -19,8 +19,8 @@ PURPOSES = {
     "npsh": "the least suction head: low level, warm liquid, dirty suction",
     "cold": "the coldest liquid: viscosity, density",
     "hot": "the warmest liquid: vapour pressure",
-    "minimum": "the least flow",
-    "pressure": "the greatest pressure",
+    "low_flow": "the least flow: minimum flow of the pump, settling, check valve",
+    "occasional": "a state that occurs now and then",
 }
 NOT_COVERED = (
     "starting, stopping and other changes with time (except the screening of pressure surge, where it is printed)",

@@ -61,6 +61,11 @@ FLAGS: dict[str, tuple[str, str, str]] = {
         "from water of lesser quality are outside this calculation.",
         "Approvals and backflow prevention are for the water authority under local rules.",
     ),
+    "solids": (
+        "Solids in the liquid",
+        "{liquid} is flagged {flag}: settling, wear and the effect on the pump curve are outside this calculation.",
+        "Test work and the maker's experience decide.",
+    ),
     "other": (
         "Hazard of the liquid",
         "{liquid} is flagged {flag}, at up to {temperature}.",

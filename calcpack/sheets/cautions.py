@@ -9,7 +9,7 @@ from __future__ import annotations
 from collections.abc import Iterator
 from dataclasses import dataclass
 
-from calcpack.formulas import duty, pipe_flow
+from calcpack.formulas import pipe_flow
 from calcpack.ledger import Entry
 from calcpack.ledger.entry import CHECK, MET, NOT_CHECKED
 from calcpack.project.model import TANK, Case, Line, Pump
@@ -144,14 +144,11 @@ def _stored(job: Job) -> Iterator[Caution]:
 
 def _column(job: Job, pump: Pump, cases: list[Case]) -> Iterator[Caution]:
     ends = [end_head(job, case, pump_path(case, job.solved(case), pump).delivery) for case in cases]
-    column = job.ledger.apply(
-        f"{pump.tag}/h_stop", duty.STATIC_HEAD, symbol="h_stop", z_2=max(ends, key=lambda entry: entry.value),
-        z_1=job.input(f"{pump.tag}/z", pump.shaft_elevation, "z_p", f"{pump.tag}: elevation of the shaft centre"),
-        title="Liquid above the shaft when the pump is stopped", note="highest delivery of all cases",
-    )
-    if column.value > 0:
-        yield Caution("Stored energy", f"{{{column.id}}} of liquid stands above {pump.tag} when it is stopped, held by "
-                      "valves alone.", OWNER)
+    highest = max(ends, key=lambda entry: entry.value)
+    shaft = job.input(f"{pump.tag}/z", pump.shaft_elevation, "z_p", f"{pump.tag}: elevation of the shaft centre")
+    if highest.value > shaft.value:
+        yield Caution("Stored energy", f"When {pump.tag} stands still, liquid up to {{{highest.id}}} above datum bears "
+                      f"on it at {{{shaft.id}}}, held by valves alone.", OWNER)
 
 
 def _shut_in(job: Job, pump: Pump, case: Case) -> Iterator[Caution]:
@@ -230,7 +227,7 @@ def _exclusions(job: Job) -> Table:
     stated = list(job.project.exclusions)
     rows = []
     for topic, text in EXCLUSIONS:
-        own = [one for one in stated if topic in (one.id.lower(), one.text.lower()) or topic in one.text.lower()]
+        own = [one for one in stated if topic in f"{one.id.replace('-', ' ')} {one.text}".lower()]
         stated = [one for one in stated if one not in own]
         covered = "; ".join(one.covered_by for one in own if one.covered_by)
         words = "; ".join([text, *(one.text for one in own if one.text.lower() != topic)])

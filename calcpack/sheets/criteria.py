@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 
-from calcpack.formulas import criteria
+from calcpack.formulas import Formula, criteria
 from calcpack.ledger import Citation, Entry
 from calcpack.ledger.entry import MET, MET_WITH_WARNING, NOT_MET
 from calcpack.sheets.job import Job
@@ -12,6 +12,7 @@ from calcpack.values import SUPPLIED, Value
 
 AT_LEAST = "≥"
 AT_MOST = "≤"
+MARGIN_DIGITS = 2
 
 
 def house_limit(job: Job, name: str, kind: str, text: str, si: float, title: str, *, source: str = "COMMON",
@@ -41,33 +42,36 @@ def judge(
     ``advisory`` value beyond the limit: values that good practice wants inside but that do not decide.
     """
     limits = list(limit) if isinstance(limit, Sequence) else [limit] * (len(values) + len(advisory))
-    margins = [
-        _margin(job, key, value, bound, comparison) for value, bound in zip([*values, *advisory], limits, strict=True)
-    ]
-    deciding = range(len(values))
-    worst = min(deciding, key=lambda index: margins[index].value)
+    pairs = list(zip([*values, *advisory], limits, strict=True))
+    margins = [_margin(comparison, value, bound) for value, bound in pairs]
+    worst = min(range(len(values)), key=margins.__getitem__)
     verdict, reason = MET, ""
-    if margins[worst].value < 0:
+    if margins[worst] < 0:
         verdict = NOT_MET
-    elif band is not None and margins[worst].value < band.value:
-        verdict, reason = MET_WITH_WARNING, warning or f"margin under {{{band.id}|quantity}}"
-    else:
-        beyond = [index for index in range(len(values), len(margins)) if margins[index].value < 0]
-        if beyond:
-            worst = min(beyond, key=lambda index: margins[index].value)
-            verdict, reason = MET_WITH_WARNING, warning
-    value = [*values, *advisory][worst]
+    elif band is not None and margins[worst] < band.value:
+        verdict, reason = MET_WITH_WARNING, warning or f"margin under {{{band.id}}}"
+    elif advisory and min(margins[len(values) :]) < 0:
+        worst = min(range(len(values), len(margins)), key=margins.__getitem__)
+        verdict, reason = MET_WITH_WARNING, warning
+    value, bound = pairs[worst]
+    margin = job.ledger.apply(
+        f"check/{key}/m", _formula(comparison, value, bound), case=value.case, x=value, x_lim=bound
+    )
+    if margin.kind == "fraction":
+        margin.digits = MARGIN_DIGITS
     return job.ledger.check(
-        f"check/{key}", title, value=value, limit=limits[worst], comparison=comparison, margin=margins[worst],
-        verdict=verdict, citation=citation, note=note, warning=reason,
+        f"check/{key}", title, value=value, limit=bound, comparison=comparison, margin=margin, verdict=verdict,
+        citation=citation, note=note, warning=reason,
     )
 
 
-def _margin(job: Job, key: str, value: Entry, limit: Entry, comparison: str) -> Entry:
-    suffix = f"@{value.case}" if value.case else ""
-    entry_id = f"check/{key}/m{suffix}"
+def _formula(comparison: str, value: Entry, limit: Entry) -> Formula:
     if limit.value == 0.0:  # a relative margin to zero has no meaning
-        formula = criteria.excess(value.kind)
-    else:
-        formula = criteria.margin_below(value.kind) if comparison == AT_MOST else criteria.margin_above(value.kind)
-    return job.ledger.apply(entry_id, formula, case=value.case, x=value, x_lim=limit)
+        return criteria.excess(value.kind)
+    return criteria.margin_below(value.kind) if comparison == AT_MOST else criteria.margin_above(value.kind)
+
+
+def _margin(comparison: str, value: Entry, limit: Entry) -> float:
+    """Margin of one value, to find the one that governs; the governing one is booked."""
+    margin = float(_formula(comparison, value, limit).evaluate(x=value.value, x_lim=limit.value))
+    return -margin if limit.value == 0.0 and comparison == AT_MOST else margin

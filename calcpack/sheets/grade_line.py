@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from calcpack.formulas import fittings, grade
 from calcpack.ledger import Entry
-from calcpack.project.model import Case, Line, Pump
+from calcpack.project.model import OUTLET, Case, Line, Pump
 from calcpack.sheets.content import Block, Column, Derivation, Figure, Prose, Ref, Row, Section, Sheet, Table, Verdicts
 from calcpack.sheets.criteria import AT_LEAST, judge
 from calcpack.sheets.job import Job, case_label, least
@@ -43,7 +43,8 @@ def _section(job: Job, pump: Pump, cases: list[Case]) -> Section:
         points[case.id] = _along(job, case, pump, path)
         _series(job, case, pump, path, points[case.id])
     shown = cases[0]
-    margins = [job.ledger[f"{point}/m@{case.id}"] for case in cases for point in points[case.id]]
+    margins = [job.ledger[f"{point}/m@{case.id}"] for case in cases for point in points[case.id]
+               if f"{point}/m@{case.id}" in job.ledger]
     zero_text = "0 m" if job.ledger.system == "SI" else "0 ft"
     zero = Value(0.0, "head", zero_text, source="COMMON", locator="below it the pipe runs under vacuum",
                  status=LOOKED_UP)
@@ -60,7 +61,7 @@ def _section(job: Job, pump: Pump, cases: list[Case]) -> Section:
     )
     rows = tuple(
         Row((one.partition("/")[0], Ref(f"{one}/x"), Ref(f"{one}/z"),
-             *(Ref(f"{one}/{symbol}@{shown.id}") for symbol in ("H", "z_h", "m"))),
+             *(_cell(job, f"{one}/{symbol}@{shown.id}") for symbol in ("H", "z_h", "m"))),
             mark="lowest" if one == point and lowest.case == shown.id else "")
         for one in points[shown.id]
     )
@@ -77,6 +78,10 @@ def _section(job: Job, pump: Pump, cases: list[Case]) -> Section:
     return Section(f"grade-{tag}", f"{tag}: grade along the path", blocks)
 
 
+def _cell(job: Job, entry_id: str) -> Ref | str:
+    return Ref(entry_id) if entry_id in job.ledger else "free discharge"
+
+
 def _along(job: Job, case: Case, pump: Pump, path: Path) -> list[str]:
     """Book the heads at the profile points of the discharge lines; returns the points' id stems in order."""
     head, stems = job.ledger[f"{pump.tag}/H_d@{case.id}"], []
@@ -88,6 +93,7 @@ def _along(job: Job, case: Case, pump: Pump, path: Path) -> list[str]:
             x = job.input(f"{stem}/x", point.chainage, "x", f"{line.tag}: chainage of point {position}", case)
             z = job.input(f"{stem}/z", point.elevation, "z", f"{line.tag}: axis at point {position}", case)
             key, title = f"{stem}/H@{case.id}", f"{line.tag}: total head at point {position}"
+            at_end = point is line.profile[-1] and point.chainage.si >= line.length.si
             exit_loss = _exit_loss(job, case, line)
             operands = {"H_1": head, "h_L": total, "x": x, "L": length}
             if exit_loss is None:
@@ -96,8 +102,9 @@ def _along(job: Job, case: Case, pump: Pump, path: Path) -> list[str]:
                 at = job.ledger.apply(key, grade.HEAD_ALONG_EXIT, title=title, case=case.id, h_x=exit_loss, **operands)
             hydraulic = job.ledger.apply(f"{stem}/z_h@{case.id}", grade.HYDRAULIC_GRADE, case=case.id, H=at,
                                          h_v=velocity_head_of(job, case, line))
-            job.ledger.apply(f"{stem}/m@{case.id}", grade.AXIS_MARGIN, case=case.id, z_h=hydraulic, z=z)
             stems.append(stem)
+            if not (at_end and case.system.nodes[line.end].kind == OUTLET):  # there the pressure is atmospheric
+                job.ledger.apply(f"{stem}/m@{case.id}", grade.AXIS_MARGIN, case=case.id, z_h=hydraulic, z=z)
         head = job.ledger.apply(f"{line.tag}/H_2@{case.id}", grade.HEAD_AFTER, case=case.id, H_1=head, h_L=total)
     return stems
 

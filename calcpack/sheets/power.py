@@ -131,7 +131,7 @@ def _energy(job: Job, pump: Pump, cases: list[Case]) -> Section | None:
         return None
     hours = ledger.apply(f"{tag}/t_d", duty.RUNNING_HOURS, V_d="duty/V_d", Q=f"{tag}/Q@{normal}", case=normal)
     days = job.input("economy/n_d", economy.days_per_year, "n_d", "Days of operation in a year")
-    year = ledger.apply(f"{tag}/t_y", formulas.ANNUAL_HOURS, t_d=hours, n_d=days)
+    year = ledger.apply(f"{tag}/t_y", formulas.ANNUAL_HOURS, t_d=hours, n_d=days, t_1="duty/t_1")
     energy = ledger.apply(f"{tag}/W", formulas.ANNUAL_ENERGY, P_e=f"{tag}/P_e@{normal}", t_y=year)
     ids = [hours.id, year.id, energy.id]
     if economy.tariff is not None:

@@ -113,7 +113,8 @@ def _fit_blocks(job: Job, pump: Pump, fit: PumpCurves) -> list[Block]:
         )
         polynomial = curve.kind == POLYNOMIAL
         if polynomial:
-            cells = [part for name, _ in names for part in (Ref(f"{pump.tag}/{name}", "equation"), "; ")][:-1]
+            cells = [part for name, _ in names for part in (
+                Ref(f"{pump.tag}/{name}", "symbol"), " = ", Ref(f"{pump.tag}/{name}", "quantity"), "; ")][:-1]
         rows.append(Row((title, tuple(cells) if polynomial else "monotone cubic interpolation between the points",
                          Ref(residual.id, "quantity"))))
     columns = (Column("Curve"), Column("Coefficients", width=4.2), Column("Greatest distance to a point", width=1.6))

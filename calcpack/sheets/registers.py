@@ -35,7 +35,7 @@ _DIFFERENCE = {
 
 @dataclass(frozen=True)
 class OpenItem:
-    """Something that somebody still has to confirm or close. ``id`` is its number (A3), input path or statement id;
+    """Something that somebody still has to confirm or close. ``id`` is its number (PA3), input path or statement id;
     ``text`` may hold placeholders; ``entry`` is the ledger entry behind it ("" for statements)."""
 
     kind: str
@@ -71,8 +71,11 @@ def plain(words: str) -> str:
 
 
 def assumed(job: Job) -> list[tuple[str, Entry]]:
-    """Every value that the program supplied, with its number A1, A2, ... in booking order."""
-    return [(f"A{number}", entry) for number, entry in enumerate(job.ledger.of_origin(ASSUMED), start=1)]
+    """Every value that the program supplied, with its number PA1, PA2, ... in booking order.
+
+    P for program: the project numbers its own assumptions as it likes.
+    """
+    return [(f"PA{number}", entry) for number, entry in enumerate(job.ledger.of_origin(ASSUMED), start=1)]
 
 
 def open_items(job: Job) -> tuple[OpenItem, ...]:

@@ -18,19 +18,23 @@ STATEMENT = (
 
 
 def fill(job: Job) -> Sheet:
-    """Screen the discharge lines of every pump; the case of the greatest velocity governs each line."""
+    """Screen the longest discharge line of every pump; the case of its greatest velocity governs."""
     sections = []
     for pump in job.project.system.pumps.values():
         cases = [case for case in job.cases if f"{pump.tag}/p_d@{case.id}" in job.ledger]
         if not cases:
             continue
-        for line in pump_path(cases[0], job.solved(cases[0]), pump).discharge:
-            section = _section(job, pump, line, cases)
-            if section:
-                sections.append(section)
+        section = _section(job, pump, _longest(job, pump, cases[0]), cases)
+        if section:
+            sections.append(section)
     if not sections:
         return Sheet("surge", "Surge screening", omitted="no discharge line states its wall and elastic modulus")
     return Sheet("surge", "Surge screening", tuple(sections))
+
+
+def _longest(job: Job, pump: Pump, case: Case) -> Line:
+    """The line whose reflection time is longest governs; short ones beside it follow its pressure."""
+    return max(pump_path(case, job.solved(case), pump).discharge, key=lambda line: line.length.si)
 
 
 def _section(job: Job, pump: Pump, line: Line, cases: list[Case]) -> Section | None:
@@ -53,9 +57,9 @@ def _section(job: Job, pump: Pump, line: Line, cases: list[Case]) -> Section | N
     rise = ledger.apply(f"{tag}/Delta_p@{case.id}", surge.JOUKOWSKY_PRESSURE, case=case.id, rho=job.density(case),
                         a=wave, V=fastest)
     upper = ledger.apply(f"{tag}/p_u@{case.id}", surge.UPPER_ESTIMATE, case=case.id,
-                         p_d=f"{pump.tag}/p_d@{case.id}", Delta_p=rise)
+                         p_d=f"{pump.tag}/p_d@{case.id}", dp=rise)
     lower = ledger.apply(f"{tag}/p_l@{case.id}", surge.LOWER_ESTIMATE, case=case.id,
-                         p_d=f"{pump.tag}/p_d@{case.id}", Delta_p=rise)
+                         p_d=f"{pump.tag}/p_d@{case.id}", dp=rise)
     check = _screen(job, line, upper, lower, case)
     ids = (wave.id, time.id, head.id, rise.id, upper.id, lower.id)
     blocks: tuple[Block, ...] = (

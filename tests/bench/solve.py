@@ -19,6 +19,7 @@ ROOT = Path(__file__).resolve().parents[2]
 sys.path[:0] = [str(ROOT), str(ROOT / "tests")]
 
 import builders as b  # noqa: E402
+
 from calcpack import hydraulics  # noqa: E402
 from calcpack.formulas.fittings import LOCAL_HEAD  # noqa: E402
 from calcpack.formulas.pipe_flow import FRICTION_HEAD, REYNOLDS, VELOCITY, friction_factor  # noqa: E402
@@ -102,8 +103,8 @@ def bench_grid() -> None:
     factors = sum(best(lambda entry=entry: original(*entry))[0] for entry in matrices)
     arrays, _ = best(lambda: newton.solve(net))
     whole, _ = best(lambda: hydraulics.solve(project), 3)
-    print(f"{len(net.topology.lines)} pipes, {len(net.topology.unknown)} unknown heads, "
-          f"{int(result.iterations[0])} iterations, {len(matrices)} factorisations, converged {bool(result.converged[0])}")
+    print(f"{len(net.topology.lines)} pipes, {len(net.topology.unknown)} unknown heads, {int(result.iterations[0])} "
+          f"iterations, {len(matrices)} factorisations, converged {bool(result.converged[0])}")
     print(f"  factorisations {factors * 1e3:.0f} ms; arrays {arrays * 1e3:.0f} ms = {arrays / factors:.2f} x; "
           f"whole project {whole * 1e3:.0f} ms = {whole / factors:.2f} x (goal 2.5)")
 

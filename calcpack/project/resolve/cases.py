@@ -6,7 +6,7 @@ from collections.abc import Mapping
 from dataclasses import replace
 
 from calcpack.project.model import TANK, Case, System
-from calcpack.project.problems import Problems, suggestion
+from calcpack.project.problems import Problems, nearest, suggestion
 from calcpack.project.resolve.draft import Draft, Keys
 from calcpack.project.resolve.overrides import OVERRIDABLE, overlaid
 from calcpack.project.resolve.system import resolve_system
@@ -73,7 +73,7 @@ def _chosen(
         draft.wrong(keys, f"no {owner} has a {what} '{choice}'", suggestion(choice, every))
         return {}
     if isinstance(choice, Mapping):
-        _check_chosen_tags(draft, keys, choice, owner)
+        options = _without_misspelt(draft, keys, choice, options, owner)
     chosen = {}
     for tag, states in options.items():
         name = choice.get(tag) if isinstance(choice, Mapping) else choice
@@ -90,28 +90,35 @@ def _chosen(
     return chosen
 
 
-def _check_chosen_tags(draft: Draft, keys: Keys, choice: Mapping[str, str], owner: str) -> None:
+def _without_misspelt(draft: Draft, keys: Keys, choice: Mapping[str, str], options: States, owner: str) -> States:
+    """The options less those whose tag the case misspells, which is reported."""
     system = draft.inputs.system
-    if system is BROKEN:
-        return
-    parts = {"tank": system.nodes, "line": system.lines, "equipment": system.equipment}[owner]
-    for tag in choice if parts is not BROKEN else ():
-        if tag not in parts:
-            draft.wrong((*keys, tag), f"no {owner} '{tag}'", suggestion(tag, parts))
+    parts = (
+        {"tank": system.nodes, "line": system.lines, "equipment": system.equipment}[owner] if intact(system) else BROKEN
+    )
+    if parts is BROKEN:
+        return options
+    unknown = [tag for tag in choice if tag not in parts]
+    for tag in unknown:
+        draft.wrong((*keys, tag), f"no {owner} '{tag}'", suggestion(tag, parts))
+    meant = {nearest(tag, parts) for tag in unknown}
+    return {tag: states for tag, states in options.items() if tag not in meant}
 
 
 def _running(draft: Draft, keys: Keys, case: CaseInput, system: System) -> Mapping[str, int]:
     if not intact(case.pumps, system.pumps):
         return {}
     where = (*keys, "pumps")
+    meant = set()
     for tag, running in case.pumps.items():
         if tag not in system.pumps:
             draft.wrong((*where, tag), f"no pump '{tag}'", suggestion(tag, system.pumps))
+            meant.add(nearest(tag, system.pumps))
             continue
         pump = system.pumps[tag]
         if pump is not BROKEN and intact(pump.installed, running) and running > pump.installed:
             draft.wrong((*where, tag), f"{running} units run, but {pump.installed} installed")
     for tag in system.pumps:
-        if tag not in case.pumps:
+        if tag not in case.pumps and tag not in meant:
             draft.wrong(where, f"the case does not say how many units of {tag} run", f"such as {{{tag}: 1}}")
     return dict(case.pumps)

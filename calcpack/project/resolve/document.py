@@ -85,7 +85,7 @@ def _check_people(draft: Draft, project: ProjectFile) -> None:
 
 def _check_case_names(draft: Draft, project: ProjectFile) -> None:
     cases = draft.inputs.cases
-    if cases is BROKEN:
+    if not cases:  # broken or empty, which was reported
         return
     wanted = [(("project", "normal_case"), project.normal_case)]
     if project.requirement:

@@ -93,12 +93,14 @@ def _check_ends(draft: Draft, tag: str) -> None:
     for key, name in (("from", line.start), ("to", line.end)):
         if name is BROKEN:
             continue
+        if name in system.nodes:
+            continue
         if "." in name:
             check_port(draft, (*keys, key), name)
         elif draft.inputs.pumps is not BROKEN and name in draft.inputs.pumps:
             side = SUCTION if key == "to" else DISCHARGE
             draft.wrong((*keys, key), f"{name} is a pump; a line joins one of its ports", f"write {port(name, side)}")
-        elif name not in system.nodes:
+        else:
             draft.wrong((*keys, key), f"no node '{name}'", suggestion(name, _node_names(draft)))
     if intact(line.start, line.end) and line.start == line.end:
         draft.wrong((*keys, "to"), "the line ends where it begins")
@@ -146,6 +148,7 @@ def _check_equipment(draft: Draft) -> None:
             if item is BROKEN:
                 complete = False
             elif item not in system.equipment:
+                complete = False
                 draft.wrong(keys, f"no equipment '{item}'", suggestion(item, system.equipment))
             elif item in home:
                 draft.wrong(keys, f"{item} already sits in line {home[item]}", "an item sits in one line")

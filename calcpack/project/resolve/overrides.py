@@ -17,6 +17,8 @@ def overlaid(draft: Draft, case_id: str) -> tuple[Mapping[str, Section | None], 
     data = dict(draft.data)
     overrides = []
     for path, raw in draft.at(("cases", case_id, "set")).items():
+        if path.partition(".")[0] in OVERRIDABLE and data[path.partition(".")[0]] is None:
+            continue  # that file could not be read, which was reported
         if _lay_over(data, path, raw):
             overrides.append(Override(path, _in_words(raw), f"{raw.file}:{raw.line}"))
         else:
@@ -29,7 +31,7 @@ def overlaid(draft: Draft, case_id: str) -> tuple[Mapping[str, Section | None], 
 def _lay_over(data: dict[str, Section | None], path: str, raw: Raw) -> bool:
     """Put ``raw`` at ``path``; the blocks on the way are copied, so that the base stays as it is."""
     stem, *keys = path.split(".")
-    if stem not in OVERRIDABLE or not keys or data.get(stem) is None:
+    if stem not in OVERRIDABLE or not keys:
         return False
     parents: list[Section | Items] = [data[stem]]
     for key in keys[:-1]:

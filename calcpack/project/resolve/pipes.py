@@ -37,7 +37,9 @@ def resolve_pipe(draft: Draft, keys: Keys, pipe: PipeInput) -> tuple[Pipe, int |
     dn = int(match[1]) if match else None
     if pipe.standard or pipe.schedule:
         row = _row(draft, keys, pipe)
-        if row is not None:
+        if row is None:
+            material = material or BROKEN
+        else:
             outside = outside or draft.row((*keys, "outside_diameter"), row.outside_diameter, "outside_diameter")
             wall = wall or draft.row((*keys, "wall"), row.wall, "wall")
             material = material or _MATERIAL_OF_TABLE[row.wall.table]

@@ -91,19 +91,18 @@ class Input(BaseModel):
             problems.add(raw, "a block of keys is wanted here", f"keys: {', '.join(keys)}")
             return BROKEN
         known = {key: value for key, value in raw.items() if key in keys}
-        excused = set()
         for key in raw.keys() - keys.keys():
             free = [name for name in keys if name not in raw]
-            meant = nearest(key, free)
-            excused.add(meant)
+            if free_meant := nearest(key, free):
+                known[free_meant] = BROKEN
+            meant = free_meant or nearest(key, keys)
             hint = f"did you mean '{meant}'?" if meant else f"known: {', '.join(keys)}"
             at = raw[key]
             problems.add_at(raw.path, at.file, at.line, f"'{key}' is not known here", hint)
         for key, entry in keys.items():
-            if entry.is_required() and key not in raw:
+            if entry.is_required() and key not in known:
                 known[key] = BROKEN
-                if key not in excused:
-                    problems.add(raw, f"'{key}' is missing", _purpose(entry.description))
+                problems.add(raw, f"'{key}' is missing", _purpose(entry.description))
         with info.context.block(raw, stated=issubclass(cls, Sourced)):
             return handler(known)
 

@@ -172,13 +172,13 @@ class OneOf:
 
 
 def _check_names(raw: Any, info: core_schema.ValidationInfo) -> Any:
-    """Drop and report keys that cannot be names; every item keeps its own."""
+    """Report keys that cannot be names; they stay, so that what names them is not blamed."""
     if not isinstance(raw, Section):
         return raw
     for key, item in raw.items():
         if not NAME.fullmatch(key):
             info.context.problems.add_at(raw.path, item.file, item.line, f"'{key}' cannot be a name", NAME_HINT)
-    return Section((key, item) for key, item in raw.items() if NAME.fullmatch(key))
+    return raw
 
 
 T = TypeVar("T")
