@@ -7,7 +7,7 @@ tolerances: flow and head 0.3 %, efficiency 0.5 %, power 0.7 %, NPSHA 0.05 m, pr
 
 import pytest
 
-from calcpack.ledger.entry import CHECK, MET, MET_WITH_WARNING, REFER
+from calcpack.ledger.entry import CHECK, MET, MET_WITH_WARNING, REFER, SERIES
 
 # case: flow m3/h, head m, efficiency, shaft kW, NPSHA m, NPSHR m, ratio, % BEP, suction kPa, discharge kPa, V DN150 m/s
 DUTIES = {
@@ -128,7 +128,7 @@ def test_us_copy_gives_the_same_physics(larkmere, larkmere_us):
     ours, theirs = larkmere.job.ledger, larkmere_us.job.ledger
     compared = 0
     for entry in ours:
-        if entry.formula and entry.id in theirs and entry.value:
+        if entry.formula and entry.id in theirs and entry.origin != SERIES:
             assert theirs[entry.id].value == pytest.approx(entry.value, rel=1e-9, abs=1e-12), entry.id
             compared += 1
     assert compared > 200

@@ -6,18 +6,26 @@ from collections.abc import Iterable, Sequence
 
 from calcpack.drawings.geometry import Box
 
-CLEAR = 1.0  # mm between a name and anything else
+CLEAR = 0.8  # mm between a name and anything else
 _STEP = 2.0
 _SAMPLES = 16  # points looked at along a leader; the first few lie on the node itself
 _OFF = 5
 
 
-def name_place(x: float, y: float, width: float, height: float, occupied: Sequence[Box], frame: Box) -> Box:
-    """The free rectangle of ``width`` and ``height`` nearest to (x, y); inside ``frame`` if it can be."""
+def name_place(
+    x: float, y: float, width: float, height: float, blocks: Sequence[Box], lines: Sequence[Box], frame: Box
+) -> Box:
+    """The free rectangle of ``width`` and ``height`` nearest to (x, y), inside ``frame`` if it can be.
+
+    It keeps clear of ``blocks`` (things with text) and ``lines``; its leader keeps off the blocks and, if it can, off
+    the lines.
+    """
 
     def cost(box: Box) -> tuple:
-        hits = sum(box.overlaps(other, CLEAR) for other in occupied)
-        hits += sum(_crosses((x, y), leader_end(x, y, box), other) for other in occupied)
+        end = leader_end(x, y, box)
+        hits = 8 * sum(box.overlaps(other, CLEAR) for other in (*blocks, *lines))
+        hits += 5 * sum(_crosses((x, y), end, other) for other in blocks)
+        hits += sum(_crosses((x, y), end, other) for other in lines)
         outside = max(frame.x0 - box.x0, 0.0) + max(box.x1 - frame.x1, 0.0)
         away = abs((box.x0 + box.x1) / 2 - x) + 1.5 * abs((box.y0 + box.y1) / 2 - y)
         return hits, round(outside, 3), round(away, 3), box.y0, box.x0
@@ -41,9 +49,9 @@ def _crosses(start: tuple[float, float], end: tuple[float, float], other: Box) -
 
 def _around(x: float, y: float, width: float, height: float) -> list[Box]:
     boxes = []
-    for ring in range(10):
+    for ring in range(14):
         off = 1.5 + 1.6 * ring
-        for dx in (off, -off - width, -width / 2, -width * 0.85, -width * 0.15):
+        for dx in dict.fromkeys((1.5, off, -1.5 - width, -off - width, -width / 2, -width, -width * 0.85, 0.0)):
             for dy in (-off - height, off, -height / 2, -height - 0.6, 0.6):
                 boxes.append(Box(x + dx, y + dy, x + dx + width, y + dy + height))
     return boxes

@@ -78,8 +78,8 @@ class _Drawing:
         self.blocks: list[Block] = [*placed.nodes.values(), *placed.lines.values(), *placed.crests.values()]
         self.routes = wire(graph, placed, self.case.system)
         self.tees = branch_points(graph, placed, self.routes)
-        self.occupied = [block.box for block in self.blocks]
-        self.occupied += [
+        self.written = [block.box for block in self.blocks]
+        self.drawn = [
             segment_box(a, b, THICK / 2)
             for paths in self.routes.values() for points in paths for a, b in pairwise(points)
         ]  # fmt: skip
@@ -89,14 +89,14 @@ class _Drawing:
         svg = Svg()
         axis = Box(-3.0, self.scale.y(self.scale.high), self.placed.width, self.scale.y(self.scale.low))
         names = self._names(axis)
-        frame = around([axis, *self.occupied])
+        frame = around([axis, *self.written, *self.drawn])
         right = frame.x1
         with svg.group("axis", "elevation"):
             self._axis(svg, frame)
         self._items(svg, names)
         entries = legend_entries(self.blocks, self.tees)
         sizes = [legend_size(entries, columns) for columns in LEGEND_COLUMNS if columns <= len(entries)]
-        inside = free_rectangle(sizes, self.occupied, Box(0.0, frame.y0, frame.x1, frame.y1), 3.0)
+        inside = free_rectangle(sizes, [*self.written, *self.drawn], Box(0.0, frame.y0, frame.x1, frame.y1), 3.0)
         bottom = frame.y1 + 2.0
         if inside:
             svg.rect(inside.x0, inside.y0, inside.x1 - inside.x0, inside.y1 - inside.y0, pen=HAIR)
@@ -155,11 +155,10 @@ class _Drawing:
         names = []
         for block in self.blocks:
             if isinstance(block, JunctionBlock) and block.rows:
-                box = name_place(
-                    block.x, block.y, widest(block.rows), ROW * len(block.rows), self.occupied, frame
-                )
+                width, height = widest(block.rows), ROW * len(block.rows)
+                box = name_place(block.x, block.y, width, height, self.written, self.drawn, frame)
                 names.append((box, block.rows, (block.x, block.y)))
-                self.occupied.append(box)
+                self.written.append(box)
         return names
 
     def _notes(self) -> list[str]:

@@ -63,10 +63,11 @@ def second_solutions(
 
 @dataclass(frozen=True, eq=False)
 class _Loops:
-    """Flows of all links as ``base + loops @ x`` for chord flows ``x``; ``given`` (links,) is the head difference of
-    fixed nodes at a link's ends, ``state`` (links,) the direction of fixed losses."""
+    """Flows of all links as ``base + loops @ x`` for flows ``x`` of the links ``chords``; ``given`` (links,) is the head
+    difference of fixed nodes at a link's ends, ``state`` (links,) the direction of fixed losses."""
 
     net: Network
+    chords: list[int]
     base: np.ndarray
     loops: np.ndarray
     given: np.ndarray
@@ -97,19 +98,85 @@ def _solve(net: Network, first: CaseSolution, correlation: str) -> SecondSolutio
     ] + [first.pumps[tag].running > 0 and first.pumps[tag].flow > 0 for tag in topology.pumps]
     dead = np.isnan([first.heads[tag] for tag in topology.nodes])
     is_open = np.array(carries, dtype=bool) & ~dead[topology.start]
-    base, loops, count = _spanning_tree(net, is_open)
-    if count > MOST_LOOPS:
+    base, loops, chords = _spanning_tree(net, is_open)
+    if len(chords) > MOST_LOOPS:
         return _answer(net, first.case, NOT_RUN, correlation, np.full(len(base), np.nan), np.nan)
     fixed = np.where(topology.fixed, net.fixed_head[:, 0], 0.0)
     state = np.sign([flow.flow for flow in first.lines.values()] + [1.0] * len(topology.pumps))
-    system = _Loops(net, base, loops, fixed[topology.start] - fixed[topology.end], state, correlation)
-    if count == 0:
+    system = _Loops(net, chords, base, loops, fixed[topology.start] - fixed[topology.end], state, correlation)
+    if not chords:
         return _answer(net, first.case, FORWARD, correlation, base, 0.0)
-    if count == 1:
-        x = _bracketed(system)
-        return _answer(net, first.case, BRACKET, correlation, system.flow(x)[:, 0], float(np.abs(system.energy(x)).max()))
-    x = _corrected(system)
-    return _answer(net, first.case, LOOPS, correlation, system.flow(x)[:, 0], float(np.abs(system.energy(x)).max()))
+    method, search = (BRACKET, _bracketed) if len(chords) == 1 else (LOOPS, _corrected)
+    x = search(system)
+    left = float(np.abs(system.energy(x)).max())
+    return _answer(net, first.case, method, correlation, system.flow(x)[:, 0], left)
+
+
+def _bracketed(system: _Loops) -> np.ndarray:
+    """The chord flow (1, 1) at which the one loop closes; of several, the largest at which the sum rises."""
+
+    def energy(x: np.ndarray) -> np.ndarray:
+        return system.energy(x[None, :])[0]
+
+    low, high = _bracket(system, energy)
+    for _ in range(40):
+        points = np.linspace(low, high, 9)
+        past = np.flatnonzero(energy(points) > 0)
+        first = max(int(past[0]) if len(past) else 8, 1)
+        low, high = points[first - 1], points[first]
+        if high - low <= 1e-15 * max(abs(low), abs(high)):
+            break
+    return np.array([[0.5 * (low + high)]])
+
+
+def _bracket(system: _Loops, energy: Callable[[np.ndarray], np.ndarray]) -> tuple[float, float]:
+    """Two chord flows between which the energy sum turns from negative to positive."""
+    net, chord = system.net, system.chords[0]
+    lines = len(net.topology.lines)
+    if chord >= lines:  # a pump: look over its whole curve, for it may be met twice
+        pump = chord - lines
+        flow = np.linspace(0.0, float(net.curves.flow_max[pump, 0] * net.running[pump, 0]), SCANNED)
+        spare = energy(flow)
+        rising = np.flatnonzero((spare[:-1] <= 0) & (spare[1:] > 0))
+        if len(rising):
+            return float(flow[rising[-1]]), float(flow[rising[-1] + 1])
+    size = float(np.max(net.area, initial=1e-3)) + float(np.max(np.abs(system.base)))
+    low, high = -size, size
+    for _ in range(60):
+        first, last = energy(np.array([low, high]))
+        if first <= 0 <= last:
+            break
+        low, high = (low * 2 if first > 0 else low), (high * 2 if last < 0 else high)
+    return low, high
+
+
+def _corrected(system: _Loops) -> np.ndarray:
+    """Chord flows (chords, 1) at which all loops close, from rest in lines and best efficiency in pumps."""
+    net = system.net
+    units = np.maximum(net.running, 1.0)
+    least = np.concatenate([np.zeros(net.area.shape), net.curves.floor / units])
+    width = np.concatenate([net.area, 0.1 * net.curves.flow_max * units]) * 1e-5
+    rated = np.concatenate([np.zeros(net.area.shape), net.curves.rated * net.running])
+    x = rated[system.chords]
+    energy = system.energy(x)
+    for _ in range(MOST_STEPS):
+        flow = system.flow(x)
+        shift = width + 1e-6 * np.abs(flow)
+        slope = (system.head_loss(flow + shift) - system.head_loss(flow - shift)) / (2.0 * shift)
+        matrix = system.loops.T @ (np.maximum(slope, least) * system.loops)
+        step = np.linalg.solve(matrix, -energy)
+        before, part = float(np.sum(energy * step)), 1.0
+        for _ in range(30):
+            new = system.energy(x + part * step)
+            after = float(np.sum(new * step))
+            if after <= -0.5 * before:
+                break
+            part *= min(max(before / (before - after), 0.1), 0.7)
+        settled = np.abs(new).max() >= 0.5 * np.abs(energy).max() and np.abs(energy).max() < CLOSED
+        x, energy = x + part * step, new
+        if np.abs(energy).max() == 0 or settled:
+            break
+    return x
 
 
 def _answer(net: Network, case: str, method: str, correlation: str, flow: np.ndarray, energy: float) -> SecondSolution:
@@ -120,8 +187,8 @@ def _answer(net: Network, case: str, method: str, correlation: str, flow: np.nda
     )
 
 
-def _spanning_tree(net: Network, is_open: np.ndarray) -> tuple[np.ndarray, np.ndarray, int]:
-    """Tree flows from the demands (links,), the loop of every chord (links, chords), and the number of chords.
+def _spanning_tree(net: Network, is_open: np.ndarray) -> tuple[np.ndarray, np.ndarray, list[int]]:
+    """Tree flows from the demands (links,), the loop of every chord (links, chords), and the chords.
 
     All fixed heads are one root. Lines are taken into the tree before pumps, so that pumps become chords.
     """
@@ -151,10 +218,14 @@ def _spanning_tree(net: Network, is_open: np.ndarray) -> tuple[np.ndarray, np.nd
     supply = {node: -float(net.demand[node, 0]) for node in parent}
     for node in reversed(order[1:]):
         towards, link, sign = parent[node]
-        base[link] -= sign * -supply[node]
+        base[link] = sign * supply[node]
         if towards != count:
             supply[towards] += supply[node]
-    chords = [link for link in np.flatnonzero(is_open).tolist() if link not in tree]
+    reached = {count, *parent}
+    chords = [
+        link for link in np.flatnonzero(is_open).tolist()
+        if link not in tree and int(start[link]) in reached and int(end[link]) in reached
+    ]
     loops = np.zeros((len(topology.links), len(chords)))
     for column, chord in enumerate(chords):
         loops[chord, column] = 1.0
@@ -162,4 +233,4 @@ def _spanning_tree(net: Network, is_open: np.ndarray) -> tuple[np.ndarray, np.nd
             while node != count:
                 node, link, sign = parent[node]
                 loops[link, column] += direction * sign
-    return base, loops, len(chords)
+    return base, loops, chords

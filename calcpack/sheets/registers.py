@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Sequence
 from dataclasses import dataclass
 
@@ -18,6 +19,9 @@ from calcpack.values import CONFIRMED, UNCONFIRMED, Value
 OPEN = "open"
 TOOL = "TOOL"
 TO_CONFIRM = "edition and clause to be confirmed"
+UNUSED = "input/"  # ids of inputs that no sheet used
+_NOTE = f"Marked (to confirm): the text of the source was not seen; {TO_CONFIRM}."
+_ITEM = re.compile(r"[.\[][0-9]+\]?$")  # the last part of the path of an item of a list
 
 UNCONFIRMED_INPUT = "inputs not confirmed"
 PROGRAM_ASSUMPTION = "assumptions made by the program"
@@ -81,18 +85,15 @@ def assumed(job: Job) -> list[tuple[str, Entry]]:
 def open_items(job: Job) -> tuple[OpenItem, ...]:
     """Everything open, by kind in the order of :data:`KINDS_OF_ITEM`. Needs the complete ledger."""
     entries = _book_unused(job)
-    items = [
-        OpenItem(UNCONFIRMED_INPUT, value.path, _words(entries[value.path][0]), entries[value.path][0])
-        for value in _given(job) if value.status == UNCONFIRMED
-    ]
+    items = []
+    for path, values in _inputs_by_path(job).items():
+        if any(value.status == UNCONFIRMED for value in values):
+            first = entries[values[0].path][0]
+            items.append(OpenItem(UNCONFIRMED_INPUT, path, _words(first, more=len(values) > 1), first))
     items += [OpenItem(PROGRAM_ASSUMPTION, number, _words(entry.id), entry.id) for number, entry in assumed(job)]
     for kind, statements in ((PROJECT_ASSUMPTION, job.project.assumptions), (PROJECT_NOTE, job.project.notes)):
         items += [OpenItem(kind, one.id, plain(one.text), owner=one.owner) for one in statements if one.status == OPEN]
     return tuple(items)
-
-
-def _words(entry_id: str) -> str:
-    return f"{{{entry_id}|title}}: {{{entry_id}|quantity}}"
 
 
 def open_counts(job: Job) -> dict[str, Entry]:
@@ -105,8 +106,17 @@ def open_counts(job: Job) -> dict[str, Entry]:
     }
 
 
-def _given(job: Job) -> list[Value]:
-    return [value for value in job.project.values if value.status in (CONFIRMED, UNCONFIRMED)]
+def _words(entry_id: str, more: bool = False) -> str:
+    return f"{{{entry_id}|title}}: {{{entry_id}|quantity}}{' and the rest of the list' if more else ''}"
+
+
+def _inputs_by_path(job: Job) -> dict[str, list[Value]]:
+    """Inputs of the project in file order; the items of a list stand together under the path of the list."""
+    found: dict[str, list[Value]] = {}
+    for value in job.project.values:
+        if value.status in (CONFIRMED, UNCONFIRMED):
+            found.setdefault(_ITEM.sub("", value.path), []).append(value)
+    return found
 
 
 def _book_unused(job: Job) -> dict[str, list[str]]:
@@ -116,34 +126,42 @@ def _book_unused(job: Job) -> dict[str, list[str]]:
         if entry.path:
             booked.setdefault(entry.path, []).append(entry.id)
     for value in job.project.values:
-        if value.path not in booked:
+        if value.path not in booked and value.status in (CONFIRMED, UNCONFIRMED):
             note = value.note or "read, used by no sheet"
-            booked[value.path] = [job.ledger.given(f"input/{value.path}", value, "", value.path, note=note).id]
+            booked[value.path] = [job.ledger.given(f"{UNUSED}{value.path}", value, "", value.path, note=note).id]
     return booked
 
 
 def _inputs(job: Job, entries: dict[str, list[str]]) -> Section:
     columns = (
-        Column("Input", width=3.0), Column("As written", width=1.5), Column("As used", width=1.7),
-        Column("Tolerance"), Column("Source", width=2.6), Column("Status", width=1.2), Column("Line", width=1.2),
+        Column("Input", width=3.0), Column("As written", width=1.4), Column("As used", width=1.4),
+        Column("Tolerance", width=0.9), Column("Source", width=2.2), Column("Status", width=1.1),
+        Column("Line", width=0.5), Column("Used in", width=1.5),
     )
-    values, blocks = _given(job), []
-    for file in dict.fromkeys(value.file for value in values):
-        rows = tuple(_input_row(job, value, entries[value.path]) for value in values if value.file == file)
+    inputs, blocks = _inputs_by_path(job), []
+    for file in dict.fromkeys(values[0].file for values in inputs.values()):
+        rows = tuple(_input_row(job, path, values, entries) for path, values in inputs.items() if values[0].file == file)
         blocks.append(Table(f"Inputs of {file}", columns, rows))
     if not blocks:
         blocks.append(Prose("The project states no values.", "note"))
     return Section("register-inputs", "Input register", tuple(blocks))
 
 
-def _input_row(job: Job, value: Value, ids: list[str]) -> Row:
-    used = [part for entry_id in ids for part in ("; ", Ref(entry_id, "quantity"))][1:]
-    unused = ids[0].startswith("input/")
-    cells: tuple[Cell, ...] = (
-        value.path, Ref(ids[0], "written"), "not used" if unused else tuple(used), _tolerance(job, value),
-        Ref(ids[0], "source") if value.source else "none stated", value.status, f"{value.file}:{value.line}",
-    )
-    return Row(cells, mark="open" if value.status == UNCONFIRMED else "")
+def _input_row(job: Job, path: str, values: list[Value], entries: dict[str, list[str]]) -> Row:
+    """One input, or one list: then the numbers as written, one after the other, and the first and last as used."""
+    first, ids = values[0], [entries[value.path] for value in values]
+    if len(values) > 1:
+        used: Cell = (Ref(ids[0][0], "quantity"), "to", Ref(ids[-1][0], "quantity"))
+    else:
+        used = tuple(part for entry_id in ids[0] for part in (";", Ref(entry_id, "quantity")))[1:]
+    if ids[0][0].startswith(UNUSED):
+        used = "not used"
+    statuses = dict.fromkeys(value.status for value in values)
+    return Row((
+        path.removeprefix(f"{first.file.partition('.')[0]}."), tuple(Ref(one[0], "written") for one in ids), used,
+        _tolerance(job, first), Ref(ids[0][0], "source") if first.source else "none stated", ", ".join(statuses),
+        str(first.line), Ref(ids[0][0], "used"),
+    ))
 
 
 def _tolerance(job: Job, value: Value) -> Cell:
@@ -155,7 +173,7 @@ def _tolerance(job: Job, value: Value) -> Cell:
                            line=value.line)
         entry = job.ledger.given(entry_id, as_written, "u", f"{value.path}: tolerance")
         entry.digits = fewest_digits(job, entry)
-    return ("± ", Ref(entry_id, "quantity"))
+    return ("±", Ref(entry_id, "quantity"))
 
 
 def fewest_digits(job: Job, entry: Entry) -> int:
@@ -166,11 +184,13 @@ def fewest_digits(job: Job, entry: Entry) -> int:
 
 def _assumptions(job: Job) -> Section:
     columns = (
-        Column("No.", width=0.6), Column("Value supplied by the program", width=3.2), Column("Value", width=1.3),
-        Column("Source", width=2.2), Column("Reason", width=3.0),
+        Column("No.", width=0.6), Column("Value supplied by the program", width=2.8), Column("Entry", width=1.6),
+        Column("Value", width=1.2), Column("Source", width=1.8), Column("Reason", width=2.8),
+        Column("Used in", width=1.4),
     )
     rows = tuple(
-        Row((number, Ref(entry.id, "title"), Ref(entry.id, "quantity"), _sourced(entry), plain(entry.note)))
+        Row((number, Ref(entry.id, "title"), entry.id, Ref(entry.id, "quantity"), _sourced(entry), plain(entry.note),
+             Ref(entry.id, "used")))
         for number, entry in assumed(job)
     )
     blocks: list[Block] = [Prose(
@@ -178,7 +198,7 @@ def _assumptions(job: Job) -> Section:
         "until the responsible engineer confirms it or states another in the input files."
     )]
     if rows:
-        blocks.append(Table("Assumptions made by the program", columns, rows))
+        blocks.append(Table("Assumptions made by the program", columns, rows, _NOTE))
     if job.project.assumptions:
         blocks.append(_statements("Assumptions of the project", job.project.assumptions))
     if job.project.notes:
@@ -189,43 +209,48 @@ def _assumptions(job: Job) -> Section:
 def _statements(caption: str, statements: Sequence[Statement]) -> Table:
     columns = (Column("Id", width=0.8), Column("Statement", width=4.0), Column("Reason", width=3.0),
                Column("Status", width=0.8), Column("Closed by", width=1.4))
-    rows = tuple(
-        Row((one.id, one.text, one.reason, one.status, one.owner), mark="open" if one.status == OPEN else "")
-        for one in statements
-    )
+    rows = tuple(Row((one.id, one.text, one.reason, one.status, one.owner)) for one in statements)
     return Table(caption, columns, rows)
 
 
 def _looked_up(job: Job) -> Section:
-    columns = (Column("Value", width=3.4), Column("Entry", width=2.2), Column("As used", width=1.4),
-               Column("Source and row", width=3.6))
+    columns = (Column("Value", width=2.8), Column("Entry", width=2.2), Column("As used", width=1.2),
+               Column("Source and row", width=4.2))
     entries = [entry for entry in job.ledger.of_origin(LOOKED_UP) if entry.citation.key != TOOL]
     rows = tuple(
         Row((Ref(entry.id, "title"), entry.id, Ref(entry.id, "quantity"), _sourced(entry))) for entry in entries
     )
-    note = f"A source whose text was not seen is marked: {TO_CONFIRM}."
-    table = Table("Catalog rows, property values and constants", columns, rows, note)
+    table = Table("Catalog rows, property values and constants", columns, rows, _NOTE)
     return Section("register-catalog", "Values looked up", (table if rows else Prose("None.", "note"),))
 
 
 def _sourced(entry: Entry) -> Cell:
     if entry.citation.key and source(entry.citation.key).needs_confirmation:
-        return (Ref(entry.id, "source"), f" ({TO_CONFIRM})")
+        return (Ref(entry.id, "source"), "(to confirm)")
     return Ref(entry.id, "source")
 
 
 def _open(job: Job) -> Section:
     items, counts = open_items(job), open_counts(job)
-    columns = (Column("Item", width=2.6), Column("Kind", width=2.0), Column("Value", width=1.4),
-               Column("What it is", width=3.4), Column("Closed by", width=1.4))
-    rows = tuple(
-        Row((item.id, item.kind, Ref(item.entry, "quantity") if item.entry else "",
-             Ref(item.entry, "title") if item.entry else item.text, item.owner or "not named"))
-        for item in items
-    )
     blocks: list[Block] = [Facts(tuple((kind[0].upper() + kind[1:], Ref(entry.id)) for kind, entry in counts.items()))]
-    if rows:
-        blocks.append(Table("Open items", columns, rows))
-    else:
+    inputs = tuple(
+        Row((item.id, Ref(item.entry, "title"), Ref(item.entry, "quantity"), Ref(item.entry, "source")))
+        for item in items if item.kind == UNCONFIRMED_INPUT
+    )
+    if inputs:
+        columns = (Column("Input", width=3.0), Column("What it is", width=3.4), Column("Value, of a list the first",
+                   width=1.6), Column("Source", width=2.4))
+        blocks.append(Table("Inputs to be confirmed", columns, inputs))
+    if counts[PROGRAM_ASSUMPTION].value > 0:
+        blocks.append(Prose("Every assumption made by the program, in the assumption register above, is open."))
+    stated = tuple(
+        Row((item.id, item.kind, item.text, item.owner or "not named"))
+        for item in items if item.kind in (PROJECT_ASSUMPTION, PROJECT_NOTE)
+    )
+    if stated:
+        columns = (Column("Id", width=0.8), Column("Kind", width=2.0), Column("Statement", width=5.0),
+                   Column("Closed by", width=1.6))
+        blocks.append(Table("Statements to be closed", columns, stated))
+    if not items:
         blocks.append(Prose("Nothing is open."))
     return Section("register-open", "Open items", tuple(blocks))

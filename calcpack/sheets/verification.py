@@ -2,7 +2,8 @@
 
 from __future__ import annotations
 
-from calcpack.hydraulics.second_method import SecondResult, second_method
+from calcpack.hydraulics.laws import SWAMEE_JAIN
+from calcpack.hydraulics.second_method import SecondSolution, second_solutions
 from calcpack.ledger import Entry, settle_digits
 from calcpack.project.model import Case
 from calcpack.sheets import second_opinion
@@ -66,35 +67,37 @@ def _found(job: Job, entry_id: str, value: float, symbol: str, title: str, kind:
 
 def _second(job: Job) -> list[Section]:
     """Flow of every pump by another solution method, and by another friction correlation."""
-    rows = []
-    for case in job.cases:
-        second = second_method(job.project, case.id)
-        for tag in job.project.system.pumps:
-            if f"{tag}/Q@{case.id}" in job.ledger:
-                rows.append(_compare(job, case, tag, second))
+    methods = second_solutions(job.project, job.solution)
+    correlations = second_solutions(job.project, job.solution, SWAMEE_JAIN)
+    rows = [
+        _compare(job, case, tag, methods[case.id], correlations[case.id])
+        for case in job.cases
+        for tag in job.project.system.pumps
+        if f"{tag}/Q@{case.id}" in job.ledger and methods[case.id].converged and correlations[case.id].converged
+    ]
     if not rows:
-        return []
+        return [Section("verification-second", "Second method",
+                        (Prose("No second solution was found for any case: this support is missing.", "caution"),))]
     columns = (Column("Pump and case", width=3.2), Column("This package", "Q", "flow"),
                Column("Second method", "Q_2", "flow"), Column("Difference", "d_2"),
                Column("Second correlation", "Q_3", "flow"), Column("Difference", "d_3"),
                Column("Head, curve against system", "d_H"))
     blocks: tuple[Block, ...] = (
-        Prose("Second method: an own bracketed search or, for networks, a general root finder, on the same formulas. "
-              "Second correlation: the explicit friction formula in place of the implicit one. The last column compares "
+        Prose(f"Second method: {next(iter(methods.values())).method}; it balances the energy round loops where the first "
+              f"one balances nodes. Second correlation: {SWAMEE_JAIN} in place of Colebrook-White. The last column compares "
               "the head of the pump curve with the head that the sheets sum up along the path."),
         Table("Flow by a second method and by a second correlation", columns, tuple(rows)),
     )
     return [Section("verification-second", "Second method and second correlation", blocks)]
 
 
-def _compare(job: Job, case: Case, tag: str, second: SecondResult) -> Row:
+def _compare(job: Job, case: Case, tag: str, method: SecondSolution, correlation: SecondSolution) -> Row:
     ledger, own = job.ledger, job.ledger[f"{tag}/Q@{case.id}"]
     cells: list = [f"{tag}, case {case_label(case)}", Ref(own.id)]
-    for number, word, flow in ((2, "second method", second.flow[tag]),
-                               (3, "second correlation", second.flow_by_correlation[tag])):
-        other = ledger.found(f"{tag}/Q-{word.replace(' ', '-')}@{case.id}", flow, f"Q_{number}",
-                             f"{tag}: flow by the {word}", "flow", source="TOOL", locator=second.method, residual=0.0,
-                             case=case.id)
+    for number, word, second in ((2, "second method", method), (3, "second correlation", correlation)):
+        other = ledger.found(f"{tag}/Q-{word.replace(' ', '-')}@{case.id}", second.flows[tag], f"Q_{number}",
+                             f"{tag}: flow by the {word}", "flow", source="TOOL", locator=second.method,
+                             residual=second.energy, case=case.id)
         gap = difference(job, f"{tag}/d_{number}@{case.id}", f"d_{number}", f"{tag}: {word} against this package",
                          own=own, other=other)
         cells += [Ref(other.id), Ref(gap.id, "quantity")]
