@@ -70,11 +70,12 @@ def draft(folder: Path, progress: Progress) -> Outcome:
     Both files are complete or not there: each is written beside its place and moved.
     """
     outcome = check(folder, progress)
-    from calcpack.package import package_of, pictures
+    from calcpack.package import package_of
+    from calcpack.pictures import pictures
     from calcpack.report.pdf import render
 
     progress("drawing")
-    figures = pictures(outcome.job)
+    figures = pictures(outcome.job, outcome.content)
     progress(f"rendering {len(outcome.content)} sheets")
     rendered = render(package_of(outcome.job, outcome.content, outcome.fingerprint), outcome.job.ledger, figures)
     target = folder / "build"

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import io
+from dataclasses import replace
 
 import pikepdf
 import pytest
@@ -63,8 +64,7 @@ def test_width_adds_advances():
 def test_character_without_glyph_stops_the_report_and_says_where():
     package = content(ledger())
     sheet = package.sheets[0]
-    odd = type(sheet)(sheet.key, "Verdict 漢", sheet.sections)
-    changed = type(package)(**{**vars(package), "sheets": (odd, *package.sheets[1:])})
+    changed = replace(package, sheets=(replace(sheet, title="Verdict 漢"), *package.sheets[1:]))
     with pytest.raises(RenderError, match=r"sheet 1 Verdict 漢: no bundled font has '漢' \(U\+6F22\)"):
         render_html(changed, ledger(), {"curve": SVG})
 

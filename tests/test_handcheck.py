@@ -182,6 +182,17 @@ def test_an_implicit_line_is_redone_on_both_sides():
     assert outcome.failed == ("f_wrong",) and outcome.worst_id == "f_wrong"
 
 
+def test_cases_of_one_quantity_print_to_the_same_decimal_place():
+    ledger = book(i=(1.0, "count"), a=(12.3456, "head"), b=(1.23456, "head"), c=(98.7654, "head"))
+    for case, head in (("1", "a"), ("2", "b"), ("3", "c")):
+        ledger.apply(f"P/H_1@{case}", pump.STAGE_HEAD, H=head, i="i", case=case)
+    ledger.apply("Q/H_1@1", pump.STAGE_HEAD, H="a", i="i", case="1")
+    assert settle_digits(ledger).failed == ()
+    texts = [format_number(ledger[f"P/H_1@{case}"].value, ledger[f"P/H_1@{case}"].digits) for case in "123"]
+    assert texts == ["12.346", "1.235", "98.765"]
+    assert ledger["Q/H_1@1"].digits == 4  # alone in its column
+
+
 # The check can fail
 
 

@@ -15,7 +15,7 @@ ROWS = (
     {"hydraulics"},
     {"sheets"},
     {"drawings", "report"},
-    {"results", "terminal", "package"},
+    {"results", "terminal", "package", "pictures"},
     {"build"},
     {"__main__"},
 )

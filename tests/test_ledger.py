@@ -56,6 +56,7 @@ def test_where_a_number_comes_from_decides_its_origin_and_citation(ledger):
         ("SI", 293.15, "temperature", "20 °C", 2),
         ("SI", 0.7, "efficiency", "0.70", 2),
         ("SI", 1.0, "length", "about a metre", 4),
+        ("SI", 0.12345678901234, "length", "0.12345678901234 m", 9),
     ],
 )
 def test_an_input_prints_with_the_digits_it_was_written_with_if_they_carry_it(system, si, kind, text, digits):
@@ -96,7 +97,7 @@ def test_list_operands_keep_their_order(ledger):
 
 def test_wrong_operands_are_refused(ledger):
     refusals = {
-        "A is a area; Q is a flow": lambda: ledger.apply("V", pipe_flow.VELOCITY, Q="Q", A="Q"),
+        "A must be of kind area; Q is of kind flow": lambda: ledger.apply("V", pipe_flow.VELOCITY, Q="Q", A="Q"),
         "no entry 'nothing' in the ledger": lambda: ledger.apply("V", pipe_flow.VELOCITY, Q="Q", A="nothing"),
         "needs Q, A; got Q": lambda: ledger.apply("V", pipe_flow.VELOCITY, Q="Q"),
         "needs Q, A; got Q, A, B": lambda: ledger.apply("V", pipe_flow.VELOCITY, Q="Q", A="A", B="A"),
@@ -120,7 +121,7 @@ def test_gauge_and_absolute_pressure_do_not_mix(ledger):
     ledger.looked_up("p_g", 1e5, "p_g", "Pressure", "gauge_pressure", source="COMMON")
     ledger.looked_up("p_a", 1e5, "p_a", "Pressure", "absolute_pressure", source="COMMON")
     assert ledger.apply("p", liquid.ABSOLUTE_PRESSURE, p_atm="p_a", p_g="p_g").value == 2e5
-    with pytest.raises(LedgerError, match="p_g is a gauge_pressure; p_a is a absolute_pressure"):
+    with pytest.raises(LedgerError, match="p_g must be of kind gauge_pressure; p_a is of kind absolute_pressure"):
         ledger.apply("p_2", liquid.ABSOLUTE_PRESSURE, p_atm="p_a", p_g="p_a")
 
 
@@ -192,7 +193,7 @@ def test_a_check_carries_value_limit_margin_and_the_source_of_the_limit(npsh):
         ("≤", origin.MET, "r_lim", "1.5 ≤ 1.1 .* is not 'criterion met'"),
         ("≥", "passed", "r_lim", "not a comparison and a verdict"),
         (">", origin.MET, "r_lim", "not a comparison and a verdict"),
-        ("≥", origin.MET, "NPSHR", "limit is a ratio; NPSHR is a head"),
+        ("≥", origin.MET, "NPSHR", "limit must be of kind ratio; NPSHR is of kind head"),
     ],
 )
 def test_a_check_that_contradicts_its_numbers_is_refused(npsh, comparison, verdict, limit, message):

@@ -44,9 +44,3 @@ TOTAL_HEAD = formula(
     H="head", H_st="head", h_L="head[]",
     source="BERNOULLI",
 )
-
-SYSTEM_COEFFICIENT = formula(
-    "duty.system_coefficient", "Quadratic loss coefficient", "C_Q = h_L / Q**2",
-    C_Q="quadratic_coefficient", h_L="head", Q="flow",
-    source="DEFINITION", note="holds at this flow only: friction is not exactly quadratic",
-)

@@ -98,11 +98,12 @@ def _lines(cases: Sequence[Case]) -> dict[str, np.ndarray]:
         for i, line in enumerate(case.system.lines.values()):
             roughness = line.roughness[case.roughness[line.tag]]
             states = tuple(state for _, state in equipment_states(case, line)) if line.equipment else ()
-            key = (id(line), id(roughness), *map(id, states))
+            to_outlet = case.system.nodes[line.end].kind == OUTLET
+            key = (id(line), id(roughness), to_outlet, *map(id, states))
             place = seen.get(key)
             if place is None:
                 place = seen[key] = len(rows)
-                rows.append(_row(line, roughness.si, states))
+                rows.append(_row(line, roughness.si, states, to_outlet))
             index[i, column] = place
     table = np.array(rows, dtype=float).reshape(len(rows), 9)
     diameter, length, roughness, factor, plain, crane, equipment, fixed, check = table.T
@@ -121,7 +122,7 @@ def _lines(cases: Sequence[Case]) -> dict[str, np.ndarray]:
     return {name: column[index] for name, column in columns.items()}
 
 
-def _row(line: Line, roughness: float, states: tuple[LossState, ...]) -> tuple[float, ...]:
+def _row(line: Line, roughness: float, states: tuple[LossState, ...], to_outlet: bool) -> tuple[float, ...]:
     plain = crane = equipment = fixed = 0.0
     for fitting in line.fittings:
         if fitting.method == "n_fT":
@@ -138,7 +139,7 @@ def _row(line: Line, roughness: float, states: tuple[LossState, ...]) -> tuple[f
         else:
             raise CalcpackError(f"{line.tag}: equipment state {state.name}: a quadratic loss needs its flow")
     factor = float("nan") if line.friction_factor is None else line.friction_factor.si
-    check = float(line.check_valve is not None)
+    check = float(line.check_valve is not None or to_outlet)  # an outlet has no liquid to give back
     return bore(line.pipe), line.length.si, roughness, factor, plain, crane, equipment, fixed, check
 
 

@@ -71,8 +71,11 @@ def _parts(solved: Solved) -> Iterator[tuple[int, Finding]]:
             text = f"No open path joins {', '.join(names)} to a tank or outlet: no flow, heads unknown.{stopped}"
             yield b, Finding("disconnected", names[0], text)
             for n in np.flatnonzero(inside & (net.demand[:, b] != 0)):
-                wanted = solved.said(net.demand[n, b], "flow")
-                text = f"Demand of {wanted} at {topology.nodes[n]} is not met: no open path.{stopped}"
+                amount, tag = solved.said(abs(net.demand[n, b]), "flow"), topology.nodes[n]
+                what = f"Demand of {amount} at {tag} is not met" if net.demand[n, b] > 0 else (
+                    f"Inflow of {amount} at {tag} cannot leave"
+                )
+                text = f"{what}: no open path.{stopped}"
                 yield b, Finding("unmet-demand", topology.nodes[n], text)
 
 
@@ -83,13 +86,18 @@ def _shut_lines(solved: Solved) -> Iterator[tuple[int, Finding]]:
     for i, b in zip(*np.nonzero(shut), strict=True):
         tag, first, last = topology.lines[i], head[topology.start[i], b], head[topology.end[i], b]
         heads = f"{solved.said(first, 'head')} at its start, {solved.said(last, 'head')} at its end"
-        if solved.net.check[i, b]:
-            text = f"The check valve in {tag} is shut: total head {heads}; {solved.said(last - first, 'head')} hold it."
+        short = solved.said(last - first + solved.net.fixed_loss[i, b], "head")
+        if solved.group.cases[b].system.lines[tag].check_valve is not None:
+            text = f"The check valve in {tag} is shut: total head {heads}; {short} hold it."
             yield b, Finding("closed-by-check-valve", tag, text)
-        else:
+        elif solved.net.fixed_loss[i, b] > 0:
             loss = solved.said(solved.net.fixed_loss[i, b], "head")
-            text = f"No flow in {tag}: total head {heads}; the difference is within the fixed loss of {loss}."
+            text = f"No flow in {tag}: total head {heads}; the difference does not overcome the fixed loss of {loss}."
             yield b, Finding("closed-by-fixed-loss", tag, text)
+        else:
+            outlet = topology.nodes[topology.end[i]]
+            text = f"No flow in {tag}: its outlet {outlet} is {short} too high; total head {heads}."
+            yield b, Finding("outlet-too-high", tag, text)
 
 
 def _reverse_flow(solved: Solved) -> Iterator[tuple[int, Finding]]:
@@ -99,13 +107,13 @@ def _reverse_flow(solved: Solved) -> Iterator[tuple[int, Finding]]:
         start, end = topology.nodes[topology.start[i]], topology.nodes[topology.end[i]]
         tag = topology.lines[i]
         yield b, Finding("reverse-flow", tag, f"{tag} carries {amount} from {end} to {start}.")
-    supplied = topology.sum_at_nodes(solved.result.flow, -solved.result.flow)
-    nodes = solved.group.cases[0].system.nodes.values()
-    outlet = np.array([node.kind == OUTLET for node in nodes])[:, None]
-    for n, b in zip(*np.nonzero(outlet & (supplied > 0)), strict=True):
-        amount = solved.said(supplied[n, b], "flow")
-        text = f"{amount} would enter the system at the outlet {topology.nodes[n]}, where there is no liquid to draw."
-        yield b, Finding("inflow-at-outlet", topology.nodes[n], text)
+    nodes = list(solved.group.cases[0].system.nodes.values())
+    outlet = np.array([node.kind == OUTLET for node in nodes], dtype=bool)
+    for i, b in zip(*np.nonzero(outlet[topology.start[: len(flow)], None] & (flow > 0)), strict=True):
+        tag, node = topology.lines[i], topology.nodes[topology.start[i]]
+        amount = solved.said(flow[i, b], "flow")
+        text = f"{tag} would draw {amount} from the outlet {node}, where there is no liquid: this flow is not real."
+        yield b, Finding("inflow-at-outlet", tag, text)
 
 
 def _critical_zone(solved: Solved) -> Iterator[tuple[int, Finding]]:

@@ -86,7 +86,7 @@ class Network:
 
     Lines (lines, B): ``bore``, ``area``, ``length``, ``roughness`` (relative), ``friction_factor`` (given Darcy factor,
     NaN where the correlation rules), ``local`` (sum of K), ``equipment`` (head per flow squared), ``fixed_loss`` (head
-    of equipment whatever the flow), ``check`` (a check valve sits in the line).
+    of equipment whatever the flow), ``check`` (no flow backwards: the line has a check valve, or ends at an outlet).
     Liquid and site (1, B): ``density``, ``viscosity``, ``gravity``.
     Pumps (pumps, B): ``running`` units, ``curves``.
     Nodes (nodes, B): ``fixed_head`` (NaN where unknown), ``demand`` (flow out).

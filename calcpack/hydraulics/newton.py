@@ -22,6 +22,8 @@ from calcpack.hydraulics.network import Network
 MOST_ITERATIONS = 200
 FLOW_TOLERANCE = 1e-10  # of the sum of flows, for the change still to come
 SPEED_TOLERANCE = 1e-9  # m/s in every line, for networks at rest; slower flows are set to zero
+NOISE_SPEED = 1e-6  # m/s below which a flow is zero if its head loss is lost in the rounding of the heads
+HEAD_NOISE = 1e-13  # of the largest head
 ENERGY_TOLERANCE = 1e-9  # m, and this part of the largest head
 ACCEPTED_CONTINUITY = 1e-6  # of the throughput
 ACCEPTED_ENERGY = 1e-4  # m
@@ -177,6 +179,12 @@ def _smallest_change(net: Network, flow: np.ndarray) -> np.ndarray:
     return FLOW_TOLERANCE * np.sum(np.abs(flow), axis=0) + SPEED_TOLERANCE * np.sum(net.area, axis=0)
 
 
+def _imbalance(net: Network, flow: np.ndarray, dead: np.ndarray) -> np.ndarray:
+    """Largest continuity residual at the unknown nodes that are not dead, m3/s (B,)."""
+    excess = np.where(dead, 0.0, net.topology.sum_at_nodes(-flow, flow) - net.demand)
+    return np.max(np.abs(excess[net.topology.unknown]), axis=0, initial=0.0)
+
+
 def _balanced(search: _Search, law: tuple[np.ndarray, np.ndarray]) -> np.ndarray:
     """Which blocks (B,) are balanced as well as rounding allows."""
     net = search.net
@@ -187,9 +195,7 @@ def _balanced(search: _Search, law: tuple[np.ndarray, np.ndarray]) -> np.ndarray
     limit = ENERGY_TOLERANCE * (1.0 + np.max(np.abs(search.head), axis=0, initial=0.0))
     balanced = (to_come <= small) & (energy <= limit)
     if balanced.any():
-        excess = net.topology.sum_at_nodes(-search.flow, search.flow) - net.demand
-        excess = np.where(search.dead, 0.0, excess)[net.topology.unknown]
-        balanced &= np.max(np.abs(excess), axis=0, initial=0.0) <= small
+        balanced &= _imbalance(net, search.flow, search.dead) <= small
     better = to_come < 0.5 * search.best
     search.best = np.where(better, to_come, search.best)
     search.stalled = np.where(better, 0, search.stalled + 1)
@@ -233,15 +239,17 @@ def _store(search: _Search, law: tuple[np.ndarray, np.ndarray], done: np.ndarray
     columns = np.flatnonzero(done)
     net, at = search.net.take(columns), search.blocks[columns]
     state, dead, head = search.state[:, columns], search.dead[:, columns], search.head[:, columns]
+    residual = np.where(state != 0, law[0][:, columns] - net.topology.drop(head), 0.0)
     flow = search.flow[:, columns]
-    flow = np.where(np.abs(flow) <= SPEED_TOLERANCE * valves.area_of_links(net), 0.0, flow)
-    topology = net.topology
-    excess = np.where(dead, 0.0, topology.sum_at_nodes(-flow, flow) - net.demand)[topology.unknown]
-    residual = np.where(state != 0, law[0][:, columns] - topology.drop(head), 0.0)
-    continuity = np.max(np.abs(excess), axis=0, initial=0.0)
+    noise = law[1][:, columns] * np.abs(flow) < HEAD_NOISE * (1.0 + np.max(np.abs(head), axis=0, initial=0.0))
+    area = valves.area_of_links(net)
+    at_rest = (np.abs(flow) <= SPEED_TOLERANCE * area) | (noise & (np.abs(flow) <= NOISE_SPEED * area))
+    quiet = np.where(at_rest, 0.0, flow)
+    least = SPEED_TOLERANCE * np.sum(net.area, axis=0)
+    flow = np.where(_imbalance(net, quiet, dead) <= _imbalance(net, flow, dead) + least, quiet, flow)
+    continuity = _imbalance(net, flow, dead)
     energy = np.max(np.abs(residual), axis=0, initial=0.0)
     throughput = np.max(np.abs(flow), axis=0, initial=0.0) + np.max(np.abs(net.demand), axis=0, initial=0.0)
-    least = SPEED_TOLERANCE * np.sum(net.area, axis=0)
     out.flow[:, at], out.state[:, at], out.dead[:, at] = flow, state, dead
     out.head[:, at] = np.where(dead, np.nan, head)
     out.iterations[at], out.continuity[at], out.energy[at] = iteration, continuity, energy

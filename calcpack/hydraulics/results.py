@@ -37,7 +37,7 @@ def case_solutions(group: Group, result: Result, units: str) -> dict[str, CaseSo
         }
         made[case.id] = CaseSolution(
             case.id,
-            dict(zip(topology.nodes, result.head[:, b].tolist(), strict=True)),
+            dict(zip(topology.nodes, (result.head[:, b] + 0.0).tolist(), strict=True)),
             lines,
             pumps,
             Convergence(

@@ -25,10 +25,12 @@ from calcpack.project.model import Project
 FORWARD = "flows from the demands alone"
 BRACKET = "bracketed root of one loop"
 LOOPS = "correction of all loops together"
-NOT_RUN = "not run: too many loops"
+TOO_LARGE = "not run: too many loops"
+NOT_SOLVED = "not run: the case has no solution"
 MOST_LOOPS = 400
 MOST_STEPS = 200
 SCANNED = 257  # flows at which a loop with a pump is looked at before its root is bracketed
+AT_REST = -1  # stands for a link that carries nothing
 CLOSED = 1e-9  # m, largest energy sum left in a loop; accepted up to ACCEPTED
 ACCEPTED = 1e-6
 
@@ -52,7 +54,7 @@ class SecondSolution:
 def second_solutions(
     project: Project, solution: Solution, correlation: str = laws.COLEBROOK
 ) -> dict[str, SecondSolution]:
-    """Every case of ``solution`` once more by loops, with ``correlation`` (``laws.COLEBROOK``, ``laws.SWAMEE_JAIN``)."""
+    """Every case of ``solution`` once more by loops; ``correlation`` is ``laws.COLEBROOK`` or ``laws.SWAMEE_JAIN``."""
     found = {}
     for group in groups(project.cases):
         for block, case in enumerate(group.cases):
@@ -63,8 +65,8 @@ def second_solutions(
 
 @dataclass(frozen=True, eq=False)
 class _Loops:
-    """Flows of all links as ``base + loops @ x`` for flows ``x`` of the links ``chords``; ``given`` (links,) is the head
-    difference of fixed nodes at a link's ends, ``state`` (links,) the direction of fixed losses."""
+    """Flows of all links as ``base + loops @ x`` for flows ``x`` of the links ``chords``; ``given`` (links,) is the
+    head difference of fixed nodes at a link's ends, ``state`` (links,) the direction of fixed losses."""
 
     net: Network
     chords: list[int]
@@ -93,14 +95,17 @@ class _Loops:
 
 def _solve(net: Network, first: CaseSolution, correlation: str) -> SecondSolution:
     topology = net.topology
-    carries = [
-        first.lines[tag].open and not np.isnan(first.lines[tag].flow) for tag in topology.lines
-    ] + [first.pumps[tag].running > 0 and first.pumps[tag].flow > 0 for tag in topology.pumps]
+    nothing = np.full(len(topology.links), np.nan)
+    if any(np.isnan(line.flow) for line in first.lines.values()):
+        return _answer(net, first.case, NOT_SOLVED, correlation, nothing, np.nan)
+    carries = [first.lines[tag].open for tag in topology.lines] + [
+        first.pumps[tag].running > 0 and first.pumps[tag].flow > 0 for tag in topology.pumps
+    ]
     dead = np.isnan([first.heads[tag] for tag in topology.nodes])
     is_open = np.array(carries, dtype=bool) & ~dead[topology.start]
     base, loops, chords = _spanning_tree(net, is_open)
     if len(chords) > MOST_LOOPS:
-        return _answer(net, first.case, NOT_RUN, correlation, np.full(len(base), np.nan), np.nan)
+        return _answer(net, first.case, TOO_LARGE, correlation, nothing, np.nan)
     fixed = np.where(topology.fixed, net.fixed_head[:, 0], 0.0)
     state = np.sign([flow.flow for flow in first.lines.values()] + [1.0] * len(topology.pumps))
     system = _Loops(net, chords, base, loops, fixed[topology.start] - fixed[topology.end], state, correlation)
@@ -197,15 +202,15 @@ def _spanning_tree(net: Network, is_open: np.ndarray) -> tuple[np.ndarray, np.nd
     start = np.where(topology.fixed[topology.start], count, topology.start)
     end = np.where(topology.fixed[topology.end], count, topology.end)
     parent: dict[int, tuple[int, int, float]] = {}  # node -> next node towards the root, link, sign of flow to the root
-    order, front, tree = [count], [count], set()
+    order, tree = [count], set()
     beside: dict[int, list[tuple[int, int, float]]] = {}
     for link in np.flatnonzero(is_open).tolist():
         a, b = int(start[link]), int(end[link])
         beside.setdefault(a, []).append((b, link, -1.0))
         beside.setdefault(b, []).append((a, link, 1.0))
     lines = len(topology.lines)
-    for pumps_too in (False, True):
-        front = list(order)
+
+    def grow(front: list[int], pumps_too: bool) -> None:
         while front:
             node = front.pop(0)
             for other, link, sign in beside.get(node, ()):
@@ -214,23 +219,27 @@ def _spanning_tree(net: Network, is_open: np.ndarray) -> tuple[np.ndarray, np.nd
                     tree.add(link)
                     order.append(other)
                     front.append(other)
-    base = np.zeros(len(topology.links))
+
+    grow([count], False)
+    grow(list(order), True)
+    for node in beside:  # parts that only a link at rest joins to the root: they may still circulate
+        if node != count and node not in parent:
+            parent[node] = (count, AT_REST, 0.0)
+            order.append(node)
+            grow([node], True)
+    base = np.zeros(len(topology.links) + 1)  # the last place is for links at rest
     supply = {node: -float(net.demand[node, 0]) for node in parent}
     for node in reversed(order[1:]):
         towards, link, sign = parent[node]
         base[link] = sign * supply[node]
         if towards != count:
             supply[towards] += supply[node]
-    reached = {count, *parent}
-    chords = [
-        link for link in np.flatnonzero(is_open).tolist()
-        if link not in tree and int(start[link]) in reached and int(end[link]) in reached
-    ]
-    loops = np.zeros((len(topology.links), len(chords)))
+    chords = [link for link in np.flatnonzero(is_open).tolist() if link not in tree]
+    loops = np.zeros((len(base), len(chords)))
     for column, chord in enumerate(chords):
         loops[chord, column] = 1.0
         for node, direction in ((int(end[chord]), 1.0), (int(start[chord]), -1.0)):
             while node != count:
                 node, link, sign = parent[node]
                 loops[link, column] += direction * sign
-    return base, loops, chords
+    return base[:AT_REST], loops[:AT_REST], chords

@@ -86,12 +86,16 @@ def _keep_one_way_out(
             part = joined[part]
         return part
 
+    def rank(link: int) -> tuple[bool, bool, int]:
+        """Pumps are kept before lines into tanks and outlets, those before check valves inside the system."""
+        return link >= len(topology.lines), bool(topology.fixed[topology.end[link]]), int(link)
+
     kept = []
-    for link in sorted(shutting, reverse=True):  # pumps come last among the links: they are kept first
+    for link in sorted(shutting.tolist(), key=rank, reverse=True):
         a, b = root(int(label[topology.start[link]])), root(int(label[topology.end[link]]))
         if a == b or (a in held and b in held):
             continue
-        kept.append(int(link))
+        kept.append(link)
         joined[a] = b
         if a in held:
             held.add(b)

@@ -6,7 +6,7 @@ import math
 import re
 from collections.abc import Iterable, Iterator, Sequence
 
-from calcpack.digits import DEFAULT_DIGITS, digits_written, round_significant
+from calcpack.digits import DEFAULT_DIGITS, MAX_DIGITS, digits_written, round_significant
 from calcpack.errors import LedgerError
 from calcpack.formulas import FORMULAS, Formula
 from calcpack.formulas.formula import LIST
@@ -244,14 +244,14 @@ class Ledger:
         """Kinds agree when their units do; a gauge pressure is no absolute one."""
         have, wanted = KINDS[entry.kind], KINDS[kind]
         if have.coherent != wanted.coherent or (have.word and wanted.word and have.word != wanted.word):
-            raise LedgerError(f"{where}: {name} is a {kind}; {entry.id} is a {entry.kind}")
+            raise LedgerError(f"{where}: {name} must be of kind {kind}; {entry.id} is of kind {entry.kind}")
 
     def _digits_given(self, value: Value) -> int:
         """Digits as written where they carry the whole number in the printed units, else no fewer than usual."""
         number = _NUMBER.match(value.text.strip())
         if not number:
             return DEFAULT_DIGITS
-        digits, kind = digits_written(number.group()), KINDS[value.kind]
+        digits, kind = min(digits_written(number.group()), MAX_DIGITS), KINDS[value.kind]
         shown, coherent = kind.display_unit(self.system), kind.coherent_unit(self.system)
         for unit in (shown,) if shown.offset else (shown, coherent):  # kelvins are not what a temperature prints in
             printed = unit.from_si(value.si)

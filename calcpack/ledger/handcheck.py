@@ -15,6 +15,7 @@ from calcpack.quantities import KINDS, UNITS, Unit
 TOLERANCE = 0.002  # relative; the other bound is one unit in the last printed digit
 NINE_DIGITS = 10.0 ** (1 - MAX_DIGITS)  # share of the largest term that printing can resolve at most
 NOISE = 1e-13  # share of the largest term that floating-point arithmetic leaves
+WITHOUT_RESULT = 1e9  # deviation of a line whose printed numbers give no result; finite, so that it can be printed
 
 
 @dataclass(frozen=True)
@@ -94,7 +95,7 @@ def _align(ledger: Ledger) -> bool:
 def deviation(ledger: Ledger, entry: Entry) -> float:
     """Difference between the redone and the printed result, as a share of the allowed difference.
 
-    Infinite where the printed numbers give no result at all (for example a divisor that rounds to zero).
+    WITHOUT_RESULT where the printed numbers give none (for example a divisor that rounds to zero).
     """
     formula = formula_of(entry)
     printed = _printed_operands(ledger, entry, formula)
@@ -106,7 +107,8 @@ def deviation(ledger: Ledger, entry: Entry) -> float:
     difference = abs(redone - left)
     if difference == 0.0:
         return 0.0
-    return difference / allowed if allowed and math.isfinite(difference) and math.isfinite(allowed) else math.inf
+    share = difference / allowed if allowed else math.inf
+    return min(share, WITHOUT_RESULT) if math.isfinite(share) else WITHOUT_RESULT
 
 
 def _printed_operands(ledger: Ledger, entry: Entry, formula: Formula) -> dict[str, float | list[float]]:

@@ -7,11 +7,12 @@ from calcpack.ledger.entry import CHECK
 from calcpack.project.model import Case, Pump
 from calcpack.sheets.content import Block, Cell, Column, Prose, Ref, Row, Section, Sheet, Table
 from calcpack.sheets.job import Job, case_label, greatest
+from calcpack.sheets.registers import count
 from calcpack.values import CONFIRMED, Value
 
 NONE = "–"
 DUTY = (("Flow", "Q", "flow"), ("Head", "H", "head"), ("Efficiency", "eta", "efficiency"),
-        ("Shaft power", "P_s", "power"), ("Share of best-efficiency flow", "r", "fraction"))
+        ("Shaft power", "P_s", "power"), ("Share of BEP", "r", "fraction"))
 SUCTION = (("Available", "NPSHA", "head"), ("Required", "NPSHR", "head"), ("Ratio", "r_N", "ratio"),
            ("Suction pressure", "p_s", "gauge_pressure"), ("Discharge pressure", "p_d", "gauge_pressure"))
 
@@ -25,10 +26,10 @@ def fill(job: Job) -> Sheet:
             sections.append(Section(f"cases-{pump.tag}", f"{pump.tag}: results of all cases", blocks))
     rows = _governing(job)
     if rows:
-        columns = (Column("Criterion", width=3.4), Column("Governing case", width=3.0), Column("Value", width=1.4),
-                   Column("Limit", width=1.4), Column("Margin", width=1.2))
+        columns = (Column("Governing case", width=2.4), Column("Criteria", "", "count", width=0.8),
+                   Column("Which", width=6.0))
         sections.append(Section("cases-governing", "Governing cases", (
-            Table("Governing case of each criterion", columns, rows),
+            Table("Cases and the criteria that each governs", columns, rows),
             Prose("Extremes are combined only as far as a case states them: a case stands for a state that can occur."),
         )))
     return Sheet("cases", "Cases", tuple(sections))
@@ -47,7 +48,7 @@ def _definition(job: Job) -> Table:
     columns = (
         Column("Case", width=2.4), Column("Levels", width=2.4), Column("Roughness", width=1.8),
         Column("Temperature", width=1.5), Column("Equipment", width=1.6),
-        *(Column(f"{pump.tag} running", "", "count", width=0.8) for pump in pumps),
+        *(Column(f"{pump.tag} running", "", "count", width=1.3) for pump in pumps),
     )
     rows = []
     for case in job.cases:
@@ -104,11 +105,12 @@ def _results(job: Job, pump: Pump) -> tuple[Block, ...]:
         first = {symbol: next(f"{pump.tag}/{symbol}@{case.id}" for case in job.cases if _has(job, pump, symbol, case))
                  for _, symbol, _ in present}
         columns = [Column("Case", width=2.8)]
-        columns += [Column(title, symbol, kind, first[symbol]) for title, symbol, kind in present]
+        columns += [Column(title, symbol, kind, first[symbol], width=1.4) for title, symbol, kind in present]
         if names is DUTY:
-            columns.append(Column("Greatest velocity", "V", "velocity"))
+            columns.append(Column("Greatest velocity", "V", "velocity", width=1.6))
         rows = tuple(_row(job, pump, case, present, names is DUTY) for case in job.cases)
-        blocks.append(Table(f"{pump.tag}: {caption}", tuple(columns), rows))
+        note = "BEP: flow at best efficiency. Greatest velocity: of all lines." if names is DUTY else ""
+        blocks.append(Table(f"{pump.tag}: {caption}", tuple(columns), rows, note))
     return tuple(blocks)
 
 
@@ -127,14 +129,14 @@ def _has(job: Job, pump: Pump, symbol: str, case: Case) -> bool:
 
 
 def _governing(job: Job) -> tuple[Row, ...]:
+    """Cases with the criteria that have their least margin there; last those that no case decides."""
+    checks = [check for check in job.ledger.of_origin(CHECK) if "margin" in (check.operands or {})]
+    names = {case.id: case_label(case) for case in job.cases} | {"": "the same in all cases"}
     rows = []
-    for check in job.ledger.of_origin(CHECK):
-        operands = check.operands or {}
-        if "value" not in operands:
-            continue
-        label = case_label(job.project.case(check.case)) if check.case else "all cases alike"
-        rows.append(Row((
-            Ref(check.id, "title"), label, Ref(operands["value"], "quantity"),
-            (check.comparison, Ref(operands["limit"], "quantity")), Ref(operands["margin"], "quantity"),
-        )))
+    for case_id, label in names.items():
+        governed = [check for check in checks if check.case == case_id]
+        if governed:
+            parts = [part for check in governed for part in (Ref(check.id, "title"), ";")]
+            number = count(job, f"count/governed@{case_id or 'all'}", len(governed), f"Criteria governed: {label}")
+            rows.append(Row((label, Ref(number.id), tuple(parts[:-1]))))
     return tuple(rows)

@@ -32,7 +32,7 @@ CRITERIA: dict[str, tuple[str, str, str]] = {
     "pressure-flanges": ("Pressure and rating", "A closed valve brings the flanges to this pressure.", PIPING),
     "surge": ("Pressure surge", "Valve closing, pump stopping and power failure can bring pressures beyond the steady "
               "ones, above and below; a change of operation needs a new look.", SPECIALIST),
-    "check-valve": ("Check valve not fully open", "A disc that is not fully open flutters and wears.", MAKER),
+    "check-valve": ("Check valve not fully open", "The loss used is that of a fully open valve.", MAKER),
     "velocity-high": ("High velocity", "Noise, erosion and surge rise with velocity.", GENERAL),
     "velocity-low": ("Low velocity", "Solids may settle and air may stay in the line.", GENERAL),
 }
@@ -57,18 +57,19 @@ FINDINGS: dict[str, tuple[str, str]] = {
 FLAGS: dict[str, tuple[str, str, str]] = {
     "potable": (
         "Drinking water",
-        "{liquid}, up to {temperature}, is flagged {flag}: materials in contact with it, disinfection, and separation "
-        "from water of lesser quality are outside this calculation.",
+        "The liquid ({liquid}, up to {temperature}) is flagged {flag}: materials in contact with it, disinfection, and "
+        "separation from water of lesser quality are outside this calculation.",
         "Approvals and backflow prevention are for the water authority under local rules.",
     ),
     "solids": (
         "Solids in the liquid",
-        "{liquid} is flagged {flag}: settling, wear and the effect on the pump curve are outside this calculation.",
+        "The liquid ({liquid}) is flagged {flag}: settling, wear and the effect on the pump curve are outside this "
+        "calculation.",
         "Test work and the maker's experience decide.",
     ),
     "other": (
         "Hazard of the liquid",
-        "{liquid} is flagged {flag}, at up to {temperature}.",
+        "The liquid ({liquid}) is flagged {flag}, at up to {temperature}.",
         "Seals, ventilation, drainage and area classification are for specialists under local rules.",
     ),
 }

@@ -27,7 +27,7 @@ from calcpack.sheets.caution_words import (
 )
 from calcpack.sheets.content import Column, Prose, Row, Section, Sheet, Table
 from calcpack.sheets.criteria import house_limit
-from calcpack.sheets.job import Job, case_label, greatest
+from calcpack.sheets.job import Job, greatest
 from calcpack.sheets.path import pump_path
 from calcpack.sheets.registers import count, open_counts, plain
 from calcpack.sheets.total_head import end_head
@@ -52,7 +52,7 @@ def fill(job: Job) -> Sheet:
         Section("cautions-raised", "Cautions raised by this project", tuple(_prose(one) for one in raised)),
         Section("cautions-always", "Cautions that hold for every pumped system",
                 tuple(_prose(one) for one in _always(job))),
-        Section("cautions-exclusions", "Outside this calculation", (_exclusions(job),)),
+        Section("cautions-exclusions", "Outside this calculation", _exclusions(job)),
         Section("cautions-unchecked", "What nobody else has checked", _unchecked(job)),
     )
     return Sheet("cautions", "Cautions and exclusions", tuple(section for section in sections if section.blocks))
@@ -63,7 +63,7 @@ def _prose(caution: Caution) -> Prose:
 
 
 def _case(job: Job, case_id: str) -> str:
-    return f"case {plain(case_label(job.project.case(case_id)))}"
+    return f"case {case_id} ({plain(job.project.case(case_id).title)})"
 
 
 def _suction(job: Job) -> Iterator[Caution]:
@@ -178,7 +178,7 @@ def _methods(job: Job) -> Iterator[Caution]:
     outside = [entry for entry in job.ledger if entry.findings]
     if outside:
         number = count(job, "count/outside-range", len(outside), "Number of results outside the range of their formula")
-        named = "; ".join(f"{entry.title} {{{entry.id}}}" for entry in outside)
+        named = "; ".join(f"{entry.id.split('/')[0]}: {entry.title} {{{entry.id}}}" for entry in outside)
         yield Caution("Formula used outside its range", f"Results outside the stated range of their formula: "
                       f"{{{number.id}}} ({named}).", "Not to be used for purchase or operation until confirmed.")
     yield from _findings(job)
@@ -221,20 +221,22 @@ def _always(job: Job) -> Iterator[Caution]:
     yield Caution("Automatic start", "A pump controlled by level, pressure or time starts without warning.", OWNER)
 
 
-def _exclusions(job: Job) -> Table:
-    """The standing list with the document that covers each topic, and the project's further exclusions."""
-    columns = (Column("Topic", width=1.6), Column("Not covered here", width=4.0), Column("Covered by", width=2.4))
-    stated = list(job.project.exclusions)
+def _exclusions(job: Job) -> tuple[Table, ...]:
+    """The standing topics with the document that covers each, and the exclusions in the project's own words."""
+    stated = job.project.exclusions
     rows = []
     for topic, text in EXCLUSIONS:
-        own = [one for one in stated if topic in f"{one.id.replace('-', ' ')} {one.text}".lower()]
-        stated = [one for one in stated if one not in own]
-        covered = "; ".join(one.covered_by for one in own if one.covered_by)
-        words = "; ".join([text, *(one.text for one in own if one.text.lower() != topic)])
-        rows.append(Row((topic, words, covered or NONE_NAMED), mark="" if covered else "open"))
-    for one in stated:
-        rows.append(Row((one.id, one.text, one.covered_by or NONE_NAMED), mark="" if one.covered_by else "open"))
-    return Table("Topics outside this calculation, and the document that covers each", columns, tuple(rows))
+        own = [one for one in stated if one.covered_by and topic in f"{one.id.replace('-', ' ')} {one.text}".lower()]
+        covered = "; ".join(f"{one.covered_by} ({one.id})" for one in own)
+        rows.append(Row((topic, text, covered or NONE_NAMED), mark="" if covered else "open"))
+    columns = (Column("Topic", width=1.6), Column("Not covered here", width=4.0), Column("Covered by", width=2.4))
+    tables = [Table("Topics outside this calculation, and the document that covers each", columns, tuple(rows))]
+    if stated:
+        columns = (Column("Id", width=0.6), Column("Excluded", width=3.4), Column("Reason", width=2.0),
+                   Column("Covered by", width=2.0))
+        own_rows = tuple(Row((one.id, one.text, one.reason, one.covered_by or NONE_NAMED)) for one in stated)
+        tables.append(Table("Exclusions stated by the project", columns, own_rows))
+    return tuple(tables)
 
 
 def _unchecked(job: Job) -> tuple[Prose, ...]:

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from calcpack.formulas import fittings, grade
+from calcpack.formulas.liquid import PRESSURE_HEAD
 from calcpack.ledger import Entry
 from calcpack.project.model import OUTLET, Case, Line, Pump
 from calcpack.sheets.content import Block, Column, Derivation, Figure, Prose, Ref, Row, Section, Sheet, Table, Verdicts
@@ -148,9 +149,23 @@ def _series(job: Job, case: Case, pump: Pump, path: Path, stems: list[str]) -> N
             energy += [(distance, start), (distance + reach, end)]
             hydraulic += [(distance, start - rise), (distance + reach, end - rise)]
         distance += ledger[f"{line.tag}/L"].value
-    for name, symbol, kind, points, title in (
+    boiling = _head(job, case, ledger["site/p_atm"].value - ledger[f"liquid/p_v@{case.temperature}"].value)
+    at_rest = end_head(job, case, path.delivery).value
+    curves = [
         ("axis", "z", "elevation", axis, "Pipe axis"), ("egl", "H", "head", energy, "Energy grade line"),
         ("hgl", "z_h", "elevation", hydraulic, "Hydraulic grade line"),
-    ):
+        ("vapour", "z_v", "elevation", [(x, z - boiling) for x, z in axis], "Grade at which the liquid boils"),
+        ("standstill", "z_0", "elevation", [(x, at_rest) for x, _ in (axis[0], axis[-1])], "Grade with the pump stopped"),
+    ]
+    ratings = [line.rating.si for line in path.discharge if line.rating is not None]
+    if len(ratings) == len(path.discharge):
+        rated = _head(job, case, min(ratings))
+        curves.append(("rating", "z_r", "elevation", [(x, z + rated) for x, z in axis], "Grade at the pressure rating"))
+    for name, symbol, kind, points, title in curves:
         ledger.series(f"grade/{tag}/{name}@{case.id}", f"{title}, {tag}", symbol, kind, points, points_kind="length",
                       case=case.id, source="BERNOULLI")
+
+
+def _head(job: Job, case: Case, pressure: float) -> float:
+    """Pressure as head of the liquid of the case, for plotted curves."""
+    return float(PRESSURE_HEAD.evaluate(p=pressure, rho=job.density(case).value, g=job.gravity().value))

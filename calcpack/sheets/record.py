@@ -87,8 +87,8 @@ def _group(entry: Entry) -> str:
 
 
 def _table(group: str, entries: list[Entry]) -> Table:
-    columns = (Column("Entry", width=2.6), Column("What it is", width=3.2), Column("Value", width=1.5),
-               Column("Made by", width=3.0), Column("Source", width=2.0))
+    columns = (Column("Entry", width=2.6), Column("What it is", width=2.8), Column("Value", width=1.4),
+               Column("Made by", width=3.6), Column("Source", width=2.2))
     rows = tuple(
         Row((entry.id, Ref(entry.id, "title"), Ref(entry.id, "choice" if entry.choice else "quantity"), _made_by(entry),
              Ref(entry.id, "source")))
@@ -101,7 +101,7 @@ def _made_by(entry: Entry) -> Cell:
     """Formula id, else the origin, and each operand by symbol and place."""
     parts: list[str | Ref] = [entry.formula or entry.origin]
     for operand in entry.operand_ids():
-        parts += [Ref(operand, "symbol"), Ref(operand, "where")]
+        parts += [";", Ref(operand, "symbol"), Ref(operand, "where")]
     return tuple(parts)
 
 

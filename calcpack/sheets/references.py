@@ -56,7 +56,7 @@ def _standing(one: Source) -> str:
 
 
 def _formulas(job: Job) -> Table:
-    columns = (Column("Formula", width=2.4), Column("Title", width=3.0), Column("Source", width=3.0),
+    columns = (Column("Formula", width=3.4), Column("Title", width=2.8), Column("Source", width=2.8),
                Column("Range of validity", width=2.2), Column("Used", "", "count", width=0.7))
     used = Counter(entry.formula for entry in job.ledger if entry.formula)
     rows = []
@@ -91,7 +91,7 @@ def _documents(job: Job) -> tuple[Block, ...]:
     """Documents of the project with the number of inputs that cite each, and the other sources that inputs name."""
     sources = [value.source for value in job.project.values if value.status in (CONFIRMED, UNCONFIRMED)]
     columns = (Column("Document", width=2.0), Column("Title", width=3.8), Column("Revision", width=1.0),
-               Column("Date", width=1.2), Column("Inputs that cite it", "", "count", width=1.0))
+               Column("Date", width=1.2), Column("Cited", "", "count", width=0.8))
     rows, named = [], set()
     for one in job.project.documents:
         citing = [text for text in sources if one.id in text]

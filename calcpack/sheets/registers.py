@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import re
 from collections.abc import Sequence
 from dataclasses import dataclass
 
@@ -20,8 +19,9 @@ OPEN = "open"
 TOOL = "TOOL"
 TO_CONFIRM = "edition and clause to be confirmed"
 UNUSED = "input/"  # ids of inputs that no sheet used
+EVERY = "*"  # in a path: every item of a list
+FEWEST = 3  # items that a list needs to be drawn together
 _NOTE = f"Marked (to confirm): the text of the source was not seen; {TO_CONFIRM}."
-_ITEM = re.compile(r"[.\[][0-9]+\]?$")  # the last part of the path of an item of a list
 
 UNCONFIRMED_INPUT = "inputs not confirmed"
 PROGRAM_ASSUMPTION = "assumptions made by the program"
@@ -111,12 +111,36 @@ def _words(entry_id: str, more: bool = False) -> str:
 
 
 def _inputs_by_path(job: Job) -> dict[str, list[Value]]:
-    """Inputs of the project in file order; the items of a list stand together under the path of the list."""
-    found: dict[str, list[Value]] = {}
+    """Inputs of the project in file order. A list whose items all state the value alike stands as one, under a path
+    with ``*`` for the number of the item."""
+    patterns: dict[str, list[Value]] = {}
     for value in job.project.values:
         if value.status in (CONFIRMED, UNCONFIRMED):
-            found.setdefault(_ITEM.sub("", value.path), []).append(value)
+            patterns.setdefault(_pattern(value.path), []).append(value)
+    found: dict[str, list[Value]] = {}
+    for pattern, values in patterns.items():
+        if _is_list(pattern, values):
+            found[pattern] = values
+        else:
+            found |= {value.path: [value] for value in values}
     return found
+
+
+def _pattern(path: str) -> str:
+    """``points.3.0`` -> ``points.*.0``, ``profile.2.elevation`` -> ``profile.*.elevation``, ``flow.4`` -> ``flow.*``."""
+    parts = path.split(".")
+    places = [place for place, part in enumerate(parts) if part.isdigit()]
+    for place in places[:-1] if len(places) > 1 and places[-1] == len(parts) - 1 else places:
+        parts[place] = EVERY
+    return ".".join(parts)
+
+
+def _is_list(pattern: str, values: list[Value]) -> bool:
+    alike = {(value.kind, value.source, value.status) for value in values}
+    if pattern.count(EVERY) != 1 or len(values) < FEWEST or len(alike) > 1:
+        return False
+    place = pattern.split(".").index(EVERY)
+    return [value.path.split(".")[place] for value in values] == [str(number) for number in range(len(values))]
 
 
 def _book_unused(job: Job) -> dict[str, list[str]]:
@@ -138,13 +162,12 @@ def _inputs(job: Job, entries: dict[str, list[str]]) -> Section:
         Column("Tolerance", width=0.9), Column("Source", width=2.2), Column("Status", width=1.1),
         Column("Line", width=0.5), Column("Used in", width=1.5),
     )
-    inputs, blocks = _inputs_by_path(job), []
-    for file in dict.fromkeys(values[0].file for values in inputs.values()):
-        rows = tuple(_input_row(job, path, values, entries) for path, values in inputs.items() if values[0].file == file)
-        blocks.append(Table(f"Inputs of {file}", columns, rows))
-    if not blocks:
-        blocks.append(Prose("The project states no values.", "note"))
-    return Section("register-inputs", "Input register", tuple(blocks))
+    by_file: dict[str, list[Row]] = {}
+    for path, values in _inputs_by_path(job).items():
+        by_file.setdefault(values[0].file, []).append(_input_row(job, path, values, entries))
+    note = f"{EVERY} in a path stands for every item of a list."
+    blocks = [Table(f"Inputs of {file}", columns, tuple(rows), note) for file, rows in by_file.items()]
+    return Section("register-inputs", "Input register", tuple(blocks) or (Prose("The project states no values."),))
 
 
 def _input_row(job: Job, path: str, values: list[Value], entries: dict[str, list[str]]) -> Row:

@@ -29,10 +29,10 @@ def _ref(job: Job, entry_id: str) -> Cell:
 
 def _lines(job: Job) -> Table:
     columns = (
-        Column("Line", width=0.9), Column("From", width=1.3), Column("To", width=1.3), Column("Service", width=1.5),
-        Column("Size", width=1.9), Column("Material", width=1.3), Column("Bore", "D", "diameter"),
+        Column("Line", width=0.9), Column("From", width=1.7), Column("To", width=1.6), Column("Service", width=1.3),
+        Column("Size", width=1.9), Column("Material", width=1.3), Column("Bore", "D", "diameter", width=0.9),
         Column("Length", "L", "length", width=0.9), Column("Roughness by state", width=1.7),
-        Column("Rating", "p_rat", "gauge_pressure", width=1.2),
+        Column("Rating", "p_rat", "gauge_pressure", width=1.7),
     )
     rows = []
     for line in job.project.system.lines.values():
@@ -62,7 +62,8 @@ def _line_results(job: Job) -> Table:
     columns = (
         Column("Line", width=0.9), Column("Case of the greatest loss", width=3.0), Column("Flow", "Q", "flow"),
         Column("Velocity", "V", "velocity"), Column("Gradient", "J", "gradient"), Column("Loss", "h_L", "head"),
-        Column("Least velocity", "V", "velocity"), Column("Greatest velocity", "V", "velocity"),
+        Column("Least velocity", "V", "velocity", width=1.5),
+        Column("Greatest velocity", "V", "velocity", width=1.8),
     )
     rows = []
     for tag in job.project.system.lines:
@@ -81,7 +82,7 @@ def _fittings(job: Job) -> Table:
     columns = (
         Column("Line", width=0.9), Column("Tag", width=0.9), Column("Fitting or valve", width=3.4),
         Column("Number", "N", "count", width=0.8), Column("Factor", "n", "dimensionless", width=0.8),
-        Column("Coefficient of one", "K_i", "loss_coefficient", width=1.2), Column("Source", width=2.4),
+        Column("Coefficient of one", "K_i", "loss_coefficient", width=1.7), Column("Source", width=2.4),
     )
     rows = []
     for line in job.project.system.lines.values():
@@ -153,9 +154,9 @@ def _booked(job: Job, tag: str, names: tuple[tuple[str, str], ...], where: str =
 
 
 def _nodes(job: Job) -> Table:
-    columns = (Column("Node", width=1.4), Column("Kind", width=1.0), Column("Description", width=2.6),
+    columns = (Column("Node", width=1.6), Column("Kind", width=1.0), Column("Description", width=2.6),
                Column("Elevation", "z", "elevation"), Column("Levels", width=3.0),
-               Column("Gas pressure", "p_g", "gauge_pressure", width=1.2), Column("Demand", "Q", "flow"))
+               Column("Gas pressure", "p_g", "gauge_pressure", width=1.5), Column("Demand", "Q", "flow"))
     return Table("Nodes, elevations and levels", columns,
                  tuple(_node(job, node) for node in job.project.system.nodes.values()))
 

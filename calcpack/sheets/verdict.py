@@ -5,13 +5,22 @@ from __future__ import annotations
 from calcpack.ledger import Entry
 from calcpack.ledger.entry import CHECK, MET, MET_WITH_WARNING, NOT_CHECKED, NOT_MET, OUT_OF_RANGE, REFER
 from calcpack.project.model import Pump
-from calcpack.sheets.content import Cell, Facts, Prose, Ref, Section, Sheet, Verdicts
+from calcpack.sheets.content import Block, Column, Facts, Prose, Ref, Row, Section, Sheet, Table, Verdicts
 from calcpack.sheets.job import Job, case_label, greatest, least
 from calcpack.sheets.registers import count, open_counts, plain
 
 # Worst first.
-ORDER = (NOT_MET, OUT_OF_RANGE, REFER, NOT_CHECKED, MET_WITH_WARNING, MET)
+ORDER = (NOT_MET, OUT_OF_RANGE, REFER, NOT_CHECKED, MET_WITH_WARNING)
 INCOMPLETE = (NOT_MET, OUT_OF_RANGE, REFER, NOT_CHECKED)
+LEAST, GREATEST = "least", "greatest"
+# Result, symbol, and which of all cases is the worst.
+RESULTS = (
+    ("Flow", "Q", LEAST), ("Total head", "H_sys", GREATEST), ("Efficiency", "eta", LEAST),
+    ("NPSHA", "NPSHA", LEAST), ("NPSHA / NPSHR", "r_N", LEAST), ("Suction pressure", "p_s", LEAST),
+    ("Discharge pressure", "p_d", GREATEST), ("Shaft power of one unit", "P_s", GREATEST),
+)
+SINGLE = (("P_m", "motor rating"), ("p_max", "greatest pressure at shut-off"),
+          ("W", "energy of a year at the normal case"))
 DEFERENCE = (
     "This package applies the formulas listed to the inputs listed. It does not replace the judgement of the "
     "responsible engineer, the maker's data, or the codes and rules that govern the site. Where a criterion reads "
@@ -20,16 +29,32 @@ DEFERENCE = (
 
 
 def fill(job: Job) -> Sheet:
-    """Group the criteria by verdict and book how many there are of each."""
-    sections = [Section("verdict-question", "Question", (Prose(plain(job.project.purpose)), _answer(job)))]
+    """Group the criteria by verdict and book how many there are of each; what is not plainly met comes first."""
+    sections = [Section("verdict-question", "Question and standing", (
+        Prose(plain(job.project.purpose)), _answer(job), _open(job), Prose(DEFERENCE, "note"),
+    ))]
     for verdict in ORDER:
         ids = tuple(check.id for check in checks(job, verdict))
         if ids:
-            sections.append(Section(f"verdict-{verdict.replace(' ', '-').replace(',', '')}", _capital(verdict),
-                                    (Verdicts(ids),)))
-    sections.append(Section("verdict-results", "Key results", (Facts(_results(job)),)))
-    sections.append(Section("verdict-open", "Open items and standing of this package", (_open(job), Prose(DEFERENCE))))
+            sections.append(Section(f"verdict-{_key(verdict)}", _capital(verdict), (Verdicts(ids),)))
+    sections.append(Section("verdict-results", "Key results", _results(job)))
+    met = checks(job, MET)
+    if met:
+        sections.append(Section(f"verdict-{_key(MET)}", _capital(MET), (_met(met),)))
     return Sheet("verdict", "Verdict", tuple(sections))
+
+
+def _met(met: list[Entry]) -> Table:
+    """The criteria that need no words, one line each."""
+    columns = (Column("Criterion", width=3.0), Column("Case", width=0.5), Column("Value", width=1.3),
+               Column("Limit", width=1.5), Column("Margin", width=0.9), Column("Source of the limit", width=3.2))
+    rows = tuple(
+        Row((Ref(check.id, "title"), check.case or "all", Ref(check.operands["value"], "quantity"),
+             (check.comparison, Ref(check.operands["limit"], "quantity")), Ref(check.operands["margin"], "quantity"),
+             Ref(check.id, "source")))
+        for check in met
+    )
+    return Table("Criteria met, with the governing case", columns, rows)
 
 
 def checks(job: Job, *verdicts: str) -> list[Entry]:
@@ -39,9 +64,9 @@ def checks(job: Job, *verdicts: str) -> list[Entry]:
 
 def verdict_counts(job: Job) -> dict[str, Entry]:
     """How many criteria ended with each verdict, worst first, as booked counts; verdicts without any left out."""
-    numbers = {verdict: len(checks(job, verdict)) for verdict in ORDER}
+    numbers = {verdict: len(checks(job, verdict)) for verdict in (*ORDER, MET)}
     return {
-        verdict: count(job, f"count/{verdict.replace(' ', '-').replace(',', '')}", number, f"Number with: {verdict}")
+        verdict: count(job, f"count/{_key(verdict)}", number, f"Number with: {verdict}")
         for verdict, number in numbers.items() if number
     }
 
@@ -57,48 +82,44 @@ def _answer(job: Job) -> Prose:
     return Prose(f"Criteria: {{{total.id}}}, of which {parts}. {end}", "" if complete else "caution")
 
 
-def _results(job: Job) -> tuple[tuple[str, Cell], ...]:
-    rows: list[tuple[str, Cell]] = []
-    for entry_id, name in (("duty/Q_req", "Required flow"), ("duty/Q_des", "Design flow")):
-        if entry_id in job.ledger:
-            rows.append((name, Ref(entry_id, "quantity")))
-    for pump in job.project.system.pumps.values():
-        rows += _normal(job, pump) + _governing(job, pump)
-    return tuple(rows)
-
-
-def _normal(job: Job, pump: Pump) -> list[tuple[str, Cell]]:
-    """The duty of the normal case, on one line each."""
+def _results(job: Job) -> tuple[Block, ...]:
+    pumps = job.project.system.pumps.values()
+    named = [("duty/Q_req", "Required flow"), ("duty/Q_des", "Design flow")]
+    named += [(f"{pump.tag}/{symbol}", f"{pump.tag}: {name}") for pump in pumps for symbol, name in SINGLE]
+    facts = tuple((name, Ref(entry_id, "quantity")) for entry_id, name in named if entry_id in job.ledger)
+    blocks: list[Block] = [Facts(facts)] if facts else []
     normal = job.project.case(job.project.normal_case)
-    names = (("Q", "flow"), ("H", "head"), ("eta", "efficiency"), ("P_s", "shaft power of one unit"),
-             ("p_d", "discharge pressure"))
-    return [
-        (f"{pump.tag}: {name}, case {case_label(normal)}", Ref(f"{pump.tag}/{symbol}@{normal.id}", "quantity"))
-        for symbol, name in names if f"{pump.tag}/{symbol}@{normal.id}" in job.ledger
-    ]
+    columns = (Column("Result", width=1.9), Column(f"Case {normal.id} (normal)", width=1.5),
+               Column("Worst of all cases", width=1.5), Column("Which", width=0.8), Column("Governing case", width=4.3))
+    for pump in pumps:
+        rows = tuple(row for row in (_result(job, pump, *one) for one in RESULTS) if row)
+        if rows:
+            blocks.append(Table(f"{pump.tag}: normal case, and the worst of all cases", columns, rows))
+    return tuple(blocks) or (Prose("No result: no pump has a duty point."),)
 
 
-def _governing(job: Job, pump: Pump) -> list[tuple[str, Cell]]:
-    """The worst of all cases, with the case that governs."""
-    tag, rows = pump.tag, []
-    for symbol, pick, name in (
-        ("Q", least, "least flow"), ("H_sys", greatest, "greatest total head"), ("r_N", least, "least NPSHA / NPSHR"),
-        ("p_s", least, "lowest suction pressure"), ("P_s", greatest, "greatest shaft power of one unit"),
-    ):
-        ids = [f"{tag}/{symbol}@{case.id}" for case in job.cases if f"{tag}/{symbol}@{case.id}" in job.ledger]
-        if ids:
-            entry = pick(job.ledger, ids)
-            label = case_label(job.project.case(entry.case))
-            rows.append((f"{tag}: {name}, case {label}", Ref(entry.id, "quantity")))
-    for symbol, name in (("P_m", "motor rating"), ("p_max", "greatest pressure at shut-off"),
-                         ("W", "energy of a year at the normal case")):
-        if f"{tag}/{symbol}" in job.ledger:
-            rows.append((f"{tag}: {name}", Ref(f"{tag}/{symbol}", "quantity")))
-    return rows
+def _result(job: Job, pump: Pump, name: str, symbol: str, which: str) -> Row | None:
+    """One result of a pump: at the normal case, and the worst of all cases with the case that gives it."""
+    ids = [f"{pump.tag}/{symbol}@{case.id}" for case in job.cases if f"{pump.tag}/{symbol}@{case.id}" in job.ledger]
+    if not ids:
+        return None
+    worst = (least if which == LEAST else greatest)(job.ledger, ids)
+    normal = f"{pump.tag}/{symbol}@{job.project.normal_case}"
+    return Row((
+        name, Ref(normal, "quantity") if normal in job.ledger else "no duty point", Ref(worst.id, "quantity"), which,
+        case_label(job.project.case(worst.case)),
+    ))
 
 
-def _open(job: Job) -> Facts:
-    return Facts(tuple((_capital(kind), Ref(entry.id)) for kind, entry in open_counts(job).items()))
+def _open(job: Job) -> Prose:
+    counts = open_counts(job)
+    parts = "; ".join(f"{kind}: {{{entry.id}}}" for kind, entry in counts.items())
+    some = any(entry.value > 0 for entry in counts.values())
+    return Prose(f"Open items: {parts}.", "caution" if some else "")
+
+
+def _key(verdict: str) -> str:
+    return verdict.replace(",", "").replace(" ", "-")
 
 
 def _capital(words: str) -> str:

@@ -49,15 +49,22 @@ class Reading:
     origins: list[tuple[str, str]] = field(default_factory=lambda: [("", "")])
 
     @contextmanager
-    def block(self, raw: Section, stated: bool) -> Iterator[None]:
-        """While the block is read its ``source`` and ``status``, if it states any, hold for the values in it."""
-        if stated and ("source" in raw or "status" in raw):
-            status = str(raw.get("status", UNCONFIRMED))
-            self.origins.append((str(raw.get("source", "")), status))
+    def block(self, raw: Section) -> Iterator[None]:
+        """While a block is read, the ``source`` and ``status`` that it states hold for the values in it.
+
+        A block that names a source of its own is unconfirmed unless it says otherwise.
+        """
+        source = str(raw.get("source", self.origins[-1][0]))
+        status = str(raw.get("status", UNCONFIRMED if "source" in raw else self.origins[-1][1]))
+        if raw.get("status") == CONFIRMED and not source:
+            at = raw["status"]
+            text, hint = "said to be confirmed, but no source is named", "add source: '...'"
+            self.problems.add_at(raw.path, at.file, at.line, text, hint)
+        self.origins.append((source, status))
+        try:
             yield
+        finally:
             self.origins.pop()
-        else:
-            yield
 
 
 def tolerant(raw: Any, handler: Callable[[Any], Any], info: ValidationInfo) -> Any:
@@ -103,7 +110,9 @@ class Input(BaseModel):
             if entry.is_required() and key not in known:
                 known[key] = BROKEN
                 problems.add(raw, f"'{key}' is missing", _purpose(entry.description))
-        with info.context.block(raw, stated=issubclass(cls, Sourced)):
+        if not issubclass(cls, Sourced):
+            return handler(known)
+        with info.context.block(raw):
             return handler(known)
 
     @field_validator("*", mode="wrap")

@@ -1,0 +1,208 @@
+"""Pump and system curves with every duty point, over panels for efficiency, NPSH and shaft power.
+
+All numbers are booked series and entries; see :class:`SystemCurveSpec` for what the caller lists.
+"""
+
+from __future__ import annotations
+
+from calcpack.drawings.curve_panels import Curves, draw_lower_panels, lower_panels
+from calcpack.drawings.free_space import free_rectangle
+from calcpack.drawings.geometry import Box
+from calcpack.drawings.plot_labels import HEIGHT, PITCH, Placer, end_labels, label_width, nearest_point, track_boxes
+from calcpack.drawings.plots import LINE_STYLES, Page, axis_title, set_ticks, style, symbol
+from calcpack.drawings.specs import SystemCurveSpec
+from calcpack.drawings.svg import BLUE, INK
+from calcpack.ledger import Ledger
+from calcpack.ledger.text import number_text, quantity_text, unit_of
+from calcpack.quantities import KINDS
+
+WIDTH = 170.0  # mm
+LEFT, RIGHT, TOP, FOOT = 15.0, 24.0, 5.0, 10.0
+HEAD_HEIGHT = 92.0
+PANEL_HEIGHT, PANEL_GAP = 24.0, 3.0
+ROOM_ABOVE = 0.12  # of the greatest head
+BAND = "#ececec"
+REGION = "#e3eaf1"
+NUMBER_RADIUS = 1.75  # mm, the circle round a case number
+_FRAME = Box(LEFT, TOP, WIDTH - RIGHT, TOP + HEAD_HEIGHT)
+
+
+def system_curve(ledger: Ledger, spec: SystemCurveSpec) -> str:
+    """SVG text of the plot, 170 mm wide. Raises LedgerError for an id that is not booked.
+
+    The table of duty points stands where the head panel is empty; where it is nowhere empty enough, under the panels.
+    """
+    with style():
+        plot = _Plot(ledger, spec, strip=0.0)
+        if not plot.draw():
+            plot = _Plot(ledger, spec, strip=PITCH * (len(spec.cases) + 2) + 2.0)
+            plot.draw()
+        return plot.page.svg()
+
+
+class _Plot:
+    def __init__(self, ledger: Ledger, spec: SystemCurveSpec, strip: float) -> None:
+        self.ledger, self.spec, self.strip = ledger, spec, strip
+        self.curves = Curves(ledger, spec)
+        self.panels = lower_panels(spec)
+        self.bottom = TOP + HEAD_HEIGHT + (PANEL_HEIGHT + PANEL_GAP) * len(self.panels)
+        self.page = Page(WIDTH, self.bottom + FOOT + strip)
+        self.axes = self.page.axes(LEFT, TOP, WIDTH - LEFT - RIGHT, HEAD_HEIGHT)
+        self.texts: list[Box] = []
+        self.tracks: list[Box] = []
+
+    def draw(self) -> bool:
+        """Draw everything; False when the table of duty points found no room."""
+        heads = [y for _, ys in self.curves.heads() for y in ys]
+        self.axes.set_xlim(0.0, self.curves.flow_end)
+        self.axes.set_ylim(min(0.0, *heads), max(heads) * (1 + ROOM_ABOVE))
+        self._regions()
+        ends = [*self._systems(), *self._pumps()]
+        set_ticks(self.page, self.axes, "y", 12)
+        set_ticks(self.page, self.axes, "x", 15, drop=0.0 if self.panels else 2.4)
+        self.page.text(3.5, TOP + HEAD_HEIGHT / 2, axis_title(symbol("H"), KINDS["head"].display_unit(self.system)),
+                       anchor="center", turned=True)  # fmt: skip
+        self.texts += end_labels(self.page, ends, WIDTH - RIGHT + 3.2, TOP + 1.5, TOP + HEAD_HEIGHT - 1.5)
+        self._duty_points()
+        draw_lower_panels(self.page, self.curves, self.panels, TOP + HEAD_HEIGHT + PANEL_GAP, self._flow_lines)
+        flow_title = axis_title(symbol("Q"), KINDS["flow"].display_unit(self.system))
+        self.page.text(LEFT + (WIDTH - LEFT - RIGHT) / 2, self.bottom + 6.6, flow_title, anchor="center")
+        return self._table()
+
+    @property
+    def system(self) -> str:
+        return self.ledger.system
+
+    def _regions(self) -> None:
+        """Preferred region as a band, minimum and best-efficiency flow as lines, each named at the top."""
+        preferred = self.curves.preferred()
+        if preferred:
+            self.axes.axvspan(*preferred, color=REGION, linewidth=0, zorder=0.5)
+            low, _ = self.page.place(self.axes, preferred[0], 0)
+            high, _ = self.page.place(self.axes, preferred[1], 0)
+            self._note((low + high) / 2, "preferred region")
+        for flow, name, _ in self.curves.flow_lines():
+            x, _ = self.page.place(self.axes, flow, 0)
+            y = TOP + HEAD_HEIGHT - 1.5
+            self.page.text(x - HEIGHT / 2 - 0.3, y, name, anchor="right", turned=True)
+            self.texts.append(Box(x - HEIGHT - 0.3, y, x, y + label_width(name)))
+        self._flow_lines(self.axes)
+
+    def _flow_lines(self, axes) -> None:
+        for flow, _, dash in self.curves.flow_lines():
+            axes.axvline(flow, color=INK, linewidth=0.6, linestyle=dash, zorder=1.4)
+
+    def _note(self, x: float, text: str) -> None:
+        y = TOP + 2.0
+        width = label_width(text)
+        self.page.text(x, y, text, anchor="center")
+        self.texts.append(Box(x - width / 2, y - HEIGHT / 2, x + width / 2, y + HEIGHT / 2))
+
+    def _systems(self) -> list[tuple[float, float, str]]:
+        """System curves over the band between their extremes; returns the ends for labels."""
+        ends = []
+        band = self.curves.band()
+        if band:
+            self.axes.fill_between(*band, color=BAND, linewidth=0, zorder=0.8)
+        for index, case in enumerate(self.spec.cases):
+            if not case.system:
+                continue
+            xs, ys = self.curves.series(case.system)
+            dash = LINE_STYLES[index % len(LINE_STYLES)]
+            self.axes.plot(xs, ys, color=INK, linewidth=0.8, linestyle=dash, zorder=2.2)
+            self.axes.plot(xs[:1], ys[:1], "o", color=INK, markersize=2.2, zorder=3, clip_on=False)
+            ends.append(self._track(xs, ys, f"system, case {case.case}"))
+        return ends
+
+    def _pumps(self) -> list[tuple[float, float, str]]:
+        ends = []
+        for pump in self.spec.pumps:
+            for units in pump.units:
+                xs, ys = self.curves.series(pump.head, units)
+                self.axes.plot(xs, ys, color=BLUE, linewidth=1.5, zorder=2.6)
+                points = self.curves.points(pump.head_points, units)
+                self.axes.plot(*points, "o", color=BLUE, markersize=2.6, zorder=2.7, clip_on=False)
+                name = f"{units} × {pump.label}" if len(pump.units) > 1 or units > 1 else pump.label
+                ends.append(self._track(xs, ys, name))
+        return ends
+
+    def _track(self, xs, ys, name: str) -> tuple[float, float, str]:
+        track = [self.page.place(self.axes, x, y) for x, y in zip(xs, ys, strict=True)]
+        self.tracks += track_boxes(track)
+        return (*track[-1], name)
+
+    def _duty_points(self) -> None:
+        placer = Placer(_FRAME, self.texts, self.tracks)
+        points = [(*self._at(case.flow, case.head), case.case) for case in self.spec.cases if case.flow and case.head]
+        placer.texts += [Box(x, y, x, y).grown(0.8) for x, y, _ in points]
+        if self.spec.required:
+            x, y = self._at(*self.spec.required)
+            self._marker(self.spec.required, "D", 5.0, "none")
+            text = "required " + ", ".join(quantity_text(self.ledger[one], unit_of(self.ledger[one], self.system))
+                                           for one in self.spec.required)  # fmt: skip
+            box = placer.near(x, y, label_width(text), closest=5.0)
+            self._lead(x, y, box, 1.3)
+            self.page.text((box.x0 + box.x1) / 2, (box.y0 + box.y1) / 2, text, anchor="center")
+        for x, y, name in sorted(points):
+            size = max(2 * NUMBER_RADIUS, label_width(name) + 1.2)
+            box = placer.near(x, y, size, 2 * NUMBER_RADIUS, closest=5.0)
+            self._lead(x, y, box, 0.0)
+            self.page.disc((box.x0 + box.x1) / 2, (box.y0 + box.y1) / 2, size, 2 * NUMBER_RADIUS)
+            self.page.text((box.x0 + box.x1) / 2, (box.y0 + box.y1) / 2, name, anchor="center")
+        for case in self.spec.cases:
+            if case.flow and case.head:
+                self._marker((case.flow, case.head), "o", 3.4, INK)
+        self.texts = placer.texts
+        self.tracks += [segment for leader in placer.leaders for segment in track_boxes(leader, 0.3)]
+
+    def _lead(self, x: float, y: float, box: Box, off: float) -> None:
+        end = nearest_point(box=box, x=x, y=y)
+        length = max(((end[0] - x) ** 2 + (end[1] - y) ** 2) ** 0.5, 1e-9)
+        share = off / length
+        self.page.line((x + share * (end[0] - x), end[0]), (y + share * (end[1] - y), end[1]), 0.35)
+
+    def _at(self, flow: str, head: str) -> tuple[float, float]:
+        return self.page.place(self.axes, self.curves.shown(flow), self.curves.shown(head))
+
+    def _marker(self, pair, shape: str, size: float, fill: str) -> None:
+        x, y = (self.curves.shown(one) for one in pair)
+        self.axes.plot([x], [y], shape, markersize=size, markerfacecolor=fill, markeredgecolor=INK, markeredgewidth=0.8,
+                       zorder=5)  # fmt: skip
+
+    def _table(self) -> bool:
+        """Duty points as numbers, in the first empty place; under the panels when there is a strip for it."""
+        rows = self._rows()
+        if len(rows) < 2:
+            return True
+        widths = [max(label_width(row[k]) for row in rows) + 3.0 for k in range(len(rows[0]))]
+        size = (sum(widths) + 1.0, PITCH * len(rows) + 1.6)
+        box: Box | None
+        if self.strip:
+            box = Box(LEFT, self.bottom + FOOT, LEFT + size[0], self.bottom + FOOT + size[1])
+        else:
+            inner = Box(_FRAME.x0 + 1.5, _FRAME.y0 + 1.5, _FRAME.x1 - 1.5, _FRAME.y1 - 1.5)
+            box = free_rectangle([size], [*self.texts, *self.tracks], inner, 1.0)
+        if box is None:
+            return False
+        self.page.box(box)
+        for index, row in enumerate(rows):
+            y, right = box.y0 + 0.8 + PITCH * (index + 0.5), box.x0 + 1.0
+            for text, width in zip(row, widths, strict=True):
+                right += width
+                self.page.text(right - 1.5, y, text, anchor="right")
+        self.page.line((box.x0, box.x1), (box.y0 + 0.6 + PITCH,) * 2, 0.4)
+        return True
+
+    def _rows(self) -> list[list[str]]:
+        duties = [case for case in self.spec.cases if case.flow and case.head]
+        columns = [("case", [case.case for case in duties])]
+        for attribute, name in (("static", symbol("H", "st")), ("flow", symbol("Q")), ("head", symbol("H"))):
+            ids = [getattr(case, attribute) for case in duties]
+            if not any(ids):
+                continue
+            unit = unit_of(self.ledger[next(filter(None, ids))], self.system)
+            cells = [number_text(self.ledger[one], unit) if one else "" for one in ids]
+            columns.append((axis_title(name, unit), cells))
+        if not duties:
+            return []
+        return [[head for head, _ in columns], *map(list, zip(*(cells for _, cells in columns), strict=True))]
