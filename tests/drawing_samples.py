@@ -350,8 +350,8 @@ def hollins_curves() -> tuple[Ledger, SystemCurveSpec]:
     """A closed loop: no static head, one and two pumps in parallel."""
     ledger = Ledger("SI")
     ways = [
-        Way("1", 0.0, ((0.15405, 140.0, 0.0457e-3, 4.02, 18.0, 97.7),), 25.3),
-        Way("2", 0.0, ((0.15405, 140.0, 0.0457e-3, 4.02, 19.0, 97.7),), 25.3),
+        Way("1", 0.0, ((0.15405, 4.0, 0.0457e-3, 1.4, 0.0, 0.0), (0.15405, 140.0, 0.0457e-3, 4.02, 17.3, 97.7)), 25.3),
+        Way("2", 0.0, ((0.15405, 4.0, 0.0457e-3, 1.4, 0.0, 0.0), (0.15405, 140.0, 0.0457e-3, 4.02, 18.3, 97.7)), 25.3),
     ]
     spec = book_curves(ledger, "P-201", HOLLINS_CURVE, ways, units=2)
     ledger.given("P-201/Q_BEP", val("52 m³/h", "flow"), "Q_BEP", "best efficiency")

@@ -127,8 +127,8 @@ def test_numbers_of_sheets_sections_lines_and_tables():
     assert numbering.sheets["losses"] == "4"  # the sheet left out before it keeps its number
     assert numbering.sections["losses-L-103"] == "4.3"
     assert numbering.homes["L-103/D"].label == "4.3.1"
-    assert numbering.homes["L-103/h_f@1"].label == "Table 4.C"
-    assert numbering.homes["L-103/L"].label == "Table 2.A"  # the register, not the page that shows it first
+    assert numbering.homes["L-103/h_f@1"].label == "Table\u00a04.C"
+    assert numbering.homes["L-103/L"].label == "Table\u00a02.A"  # the register, not the page that shows it first
     assert numbering.homes["curve/system@1"].label == "6.1.1"
 
 

@@ -68,7 +68,7 @@ def numbers(text: str, **values: float) -> str:
         book.looked_up(name, value, name, name, "dimensionless", source="TEST", digits=3)
     entry = book.looked_up("y", 1.0, "y", "y", "dimensionless", source="TEST")
     entry.operands = {name: name for name in values}
-    return text_of(substituted(formula, entry, book, lambda _: "")[1].html)
+    return text_of(substituted(formula, entry, book, lambda _: "")[1].html).replace(f"{G}·{G}", " · ")
 
 
 @pytest.mark.parametrize(
@@ -76,7 +76,7 @@ def numbers(text: str, **values: float) -> str:
     [
         ("V", "<i>V</i>", "V"), ("h_f", "<i>h</i><sub>f</sub>", "h_f"), ("rho", "<i>ρ</i>", "ρ"),
         ("eta_m", "<i>η</i><sub>m</sub>", "η_m"), ("K_i", "<i>K</i><sub><i>i</i></sub>", "K_i"),
-        ("NPSHA", "<i>NPSHA</i>", "NPSHA"), ("dp", "Δ<i>p</i>", "Δp"), ("pi", "π", "π"),
+        ("Delta_H_1", "Δ<i>H</i><sub>1</sub>", "ΔH_1"), ("NPSHA", "<i>NPSHA</i>", "NPSHA"), ("dp", "Δ<i>p</i>", "Δp"), ("pi", "π", "π"),
         ("f_2000", "<i>f</i><sub>2000</sub>", "f_2000"), ("p_s_max", "<i>p</i><sub>s,max</sub>", "p_s,max"),
     ],
 )  # fmt: skip
@@ -108,7 +108,7 @@ def test_fraction_is_a_box_and_grouping_in_text_is_grouping_in_print():
         ("a**0.75", "<i>a</i><sup>0.75</sup>"),
         ("a**(1/2)", "<i>a</i><sup>1/2</sup>"),
         ("(a**2)**3", "(<i>a</i>²)³"),
-        ("2 * 3 * a", f"2 · 3{G}<i>a</i>"),
+        ("2 * 3 * a", f"2{G}·{G}3{G}<i>a</i>"),
         ("sqrt(a)", '<span class="rt">√<span><i>a</i></span></span>'),
         ("sqrt(a)**3", '(<span class="rt">√<span><i>a</i></span></span>)³'),
         ("log10(a)**2", "(log<sub>10</sub>\u2009(<i>a</i>))²"),
@@ -157,7 +157,7 @@ def test_numbers_put_in(text, values, printed):
 def test_sum_is_written_out_term_by_term():
     book = ledger()
     entry = book["L-103/K"]
-    written = text_of(substituted(fittings.SUM_K, entry, book, lambda _: "")[1].html)
+    written = text_of(substituted(fittings.SUM_K, entry, book, lambda _: "")[1].html).replace(G, " ")
     counts, coefficients = entry.operands["n"], entry.operands["K_i"]
     terms = [
         f"{quantity_text(book[n], printed_unit(fittings.SUM_K, 'n', 'SI'))} · "

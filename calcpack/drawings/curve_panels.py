@@ -19,6 +19,7 @@ if TYPE_CHECKING:
 
 Columns = tuple[list[float], list[float]]
 LEFT, WIDTH, RIGHT, HEIGHT, GAP = 15.0, 170.0, 24.0, 24.0, 3.0
+TITLE_AT = 4.6
 DOTTED, DASH_DOT = (0, (1.2, 1.4)), (0, (7, 1.8, 1.2, 1.8))
 
 
@@ -163,9 +164,10 @@ def _draw(page: Page, axes: Axes, curves: Curves, panel: Panel, top: float) -> N
     axes.set_xlim(0.0, curves.flow_end)
     axes.set_ylim(0.0, 1.1 * max(tops))
     for (xs, ys), name in lines:
-        ends.append((*page.place(axes, xs[-1], ys[-1]), name))
+        last = max((k for k, y in enumerate(ys) if 0.0 <= y <= 1.1 * max(tops)), default=len(ys) - 1)
+        ends.append((*page.place(axes, xs[last], ys[last]), name))
     set_ticks(page, axes, "y", 5)
-    page.text(3.5, top + HEIGHT / 2, axis_title(panel.title, KINDS[panel.kind].display_unit(system)),
+    page.text(TITLE_AT, top + HEIGHT / 2, axis_title(panel.title, KINDS[panel.kind].display_unit(system)),
               anchor="center", turned=True)  # fmt: skip
     end_labels(page, ends, WIDTH - RIGHT + 3.2, top + 1.0, top + HEIGHT - 1.0)
 

@@ -14,7 +14,7 @@ from typing import TYPE_CHECKING
 
 from calcpack.drawings.fonts import FAMILIES, MATH, POINT, SYMBOLS, font_folder
 from calcpack.drawings.geometry import Box
-from calcpack.drawings.svg import INK, PALE, PAPER, number
+from calcpack.drawings.svg import BLUE, INK, PALE, PAPER, number
 from calcpack.drawings.ticks import round_ticks, tick_texts
 from calcpack.quantities import Unit
 
@@ -120,6 +120,15 @@ class Page:
                     facecolor=PAPER, edgecolor=INK, linewidth=0.5, zorder=5)
         )  # fmt: skip
 
+    def mark(self, x: float, y: float, shape: str, size: float, fill: str) -> None:
+        """A marker about (x, y), as in the axes: black edge, or no edge where it is filled with the accent."""
+        from matplotlib.lines import Line2D
+
+        self.figure.add_artist(
+            Line2D([x / self.width], [1 - y / self.height], marker=shape, markersize=size, markerfacecolor=fill,
+                   markeredgecolor=fill if fill == BLUE else INK, markeredgewidth=0.8, zorder=5)
+        )  # fmt: skip
+
     def box(self, box: Box) -> None:
         """A white rectangle with a thin edge."""
         from matplotlib.patches import Rectangle
@@ -209,4 +218,4 @@ def _with_symbols(match: re.Match) -> str:
             attributes += f' dy="{number(-lowering)}"'
         lowered = index % 3 == 2
         spans.append(f"<tspan{attributes}>{piece}</tspan>")
-    return head + "".join(spans) + tail if len(spans) > 1 else match.group()
+    return head + "".join(spans) + tail if _OPEN in body else match.group()

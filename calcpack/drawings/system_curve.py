@@ -17,13 +17,22 @@ from calcpack.ledger.text import number_text, quantity_text, unit_of
 from calcpack.quantities import KINDS
 
 WIDTH = 170.0  # mm
-LEFT, RIGHT, TOP, FOOT = 15.0, 24.0, 5.0, 10.0
+LEFT, RIGHT, TOP, FOOT = 15.0, 24.0, 1.0, 10.0
+KEY = 3.0  # mm under the flow axis for the key of the marks
+TITLE_AT = 4.6  # mm, where the axis titles stand
 HEAD_HEIGHT = 92.0
 PANEL_HEIGHT, PANEL_GAP = 24.0, 3.0
-ROOM_ABOVE = 0.12  # of the greatest head
+ROOM_ABOVE = 0.12  # of the range shown
+ROOM_BELOW = 0.5  # of the range of heads, where the axis does not begin at zero
 BAND = "#ececec"
 REGION = "#e3eaf1"
+REGION_NAME = "preferred region"
+FAR = 14.0  # mm, a curve that ends farther than this from the right edge is named at its own end
 NUMBER_RADIUS = 1.75  # mm, the circle round a case number
+COLUMNS = (
+    ("static", symbol("H", "st")), ("flow", symbol("Q")), ("head", symbol("H")), ("efficiency", symbol("η")),
+    ("power", symbol("P", "s")), ("npsha", "NPSHA"), ("npshr", "NPSHR"),
+)  # fmt: skip
 _FRAME = Box(LEFT, TOP, WIDTH - RIGHT, TOP + HEAD_HEIGHT)
 
 
@@ -46,7 +55,7 @@ class _Plot:
         self.curves = Curves(ledger, spec)
         self.panels = lower_panels(spec)
         self.bottom = TOP + HEAD_HEIGHT + (PANEL_HEIGHT + PANEL_GAP) * len(self.panels)
-        self.page = Page(WIDTH, self.bottom + FOOT + strip)
+        self.page = Page(WIDTH, self.bottom + FOOT + KEY + strip)
         self.axes = self.page.axes(LEFT, TOP, WIDTH - LEFT - RIGHT, HEAD_HEIGHT)
         self.texts: list[Box] = []
         self.tracks: list[Box] = []
@@ -55,18 +64,21 @@ class _Plot:
         """Draw everything; False when the table of duty points found no room."""
         heads = [y for _, ys in self.curves.heads() for y in ys]
         self.axes.set_xlim(0.0, self.curves.flow_end)
-        self.axes.set_ylim(min(0.0, *heads), max(heads) * (1 + ROOM_ABOVE))
+        self.axes.set_ylim(_lowest(heads), max(heads) + ROOM_ABOVE * (max(heads) - _lowest(heads)))
         self._regions()
         ends = [*self._systems(), *self._pumps()]
+        inside = [end for end in ends if end[0] < _FRAME.x1 - FAR]
+        ends = [end for end in ends if end not in inside]
         set_ticks(self.page, self.axes, "y", 12)
         set_ticks(self.page, self.axes, "x", 15, drop=0.0 if self.panels else 2.4)
-        self.page.text(3.5, TOP + HEAD_HEIGHT / 2, axis_title(symbol("H"), KINDS["head"].display_unit(self.system)),
+        self.page.text(TITLE_AT, TOP + HEAD_HEIGHT / 2, axis_title(symbol("H"), KINDS["head"].display_unit(self.system)),
                        anchor="center", turned=True)  # fmt: skip
         self.texts += end_labels(self.page, ends, WIDTH - RIGHT + 3.2, TOP + 1.5, TOP + HEAD_HEIGHT - 1.5)
-        self._duty_points()
+        self._duty_points(inside)
         draw_lower_panels(self.page, self.curves, self.panels, TOP + HEAD_HEIGHT + PANEL_GAP, self._flow_lines)
         flow_title = axis_title(symbol("Q"), KINDS["flow"].display_unit(self.system))
         self.page.text(LEFT + (WIDTH - LEFT - RIGHT) / 2, self.bottom + 6.6, flow_title, anchor="center")
+        self._key()
         return self._table()
 
     @property
@@ -79,24 +91,20 @@ class _Plot:
         if preferred:
             self.axes.axvspan(*preferred, color=REGION, linewidth=0, zorder=0.5)
             low, _ = self.page.place(self.axes, preferred[0], 0)
-            high, _ = self.page.place(self.axes, preferred[1], 0)
-            self._note((low + high) / 2, "preferred region")
+            width = label_width(REGION_NAME)
+            self.page.text(low + 1.0, TOP + 2.2, REGION_NAME)
+            self.texts.append(Box(low + 1.0, TOP + 0.9, low + 1.0 + width, TOP + 3.5))
         for flow, name, _ in self.curves.flow_lines():
             x, _ = self.page.place(self.axes, flow, 0)
             y = TOP + HEAD_HEIGHT - 1.5
-            self.page.text(x - HEIGHT / 2 - 0.3, y, name, anchor="right", turned=True)
-            self.texts.append(Box(x - HEIGHT - 0.3, y, x, y + label_width(name)))
+            self.page.text(x - HEIGHT / 2 - 0.3, y, name, turned=True)
+            self.texts.append(Box(x - HEIGHT - 0.3, y - label_width(name), x, y))
+            self.tracks += track_boxes(((x, TOP), (x, TOP + HEAD_HEIGHT)))
         self._flow_lines(self.axes)
 
     def _flow_lines(self, axes) -> None:
         for flow, _, dash in self.curves.flow_lines():
             axes.axvline(flow, color=INK, linewidth=0.6, linestyle=dash, zorder=1.4)
-
-    def _note(self, x: float, text: str) -> None:
-        y = TOP + 2.0
-        width = label_width(text)
-        self.page.text(x, y, text, anchor="center")
-        self.texts.append(Box(x - width / 2, y - HEIGHT / 2, x + width / 2, y + HEIGHT / 2))
 
     def _systems(self) -> list[tuple[float, float, str]]:
         """System curves over the band between their extremes; returns the ends for labels."""
@@ -131,7 +139,7 @@ class _Plot:
         self.tracks += track_boxes(track)
         return (*track[-1], name)
 
-    def _duty_points(self) -> None:
+    def _duty_points(self, named_ends: list[tuple[float, float, str]]) -> None:
         placer = Placer(_FRAME, self.texts, self.tracks)
         points = [(*self._at(case.flow, case.head), case.case) for case in self.spec.cases if case.flow and case.head]
         placer.texts += [Box(x, y, x, y).grown(0.8) for x, y, _ in points]
@@ -143,6 +151,9 @@ class _Plot:
             box = placer.near(x, y, label_width(text), closest=5.0)
             self._lead(x, y, box, 1.3)
             self.page.text((box.x0 + box.x1) / 2, (box.y0 + box.y1) / 2, text, anchor="center")
+        for x, y, name in named_ends:
+            box = placer.near(x, y, label_width(name), closest=2.0)
+            self.page.text((box.x0 + box.x1) / 2, (box.y0 + box.y1) / 2, name, anchor="center")
         for x, y, name in sorted(points):
             size = max(2 * NUMBER_RADIUS, label_width(name) + 1.2)
             box = placer.near(x, y, size, 2 * NUMBER_RADIUS, closest=5.0)
@@ -154,6 +165,22 @@ class _Plot:
                 self._marker((case.flow, case.head), "o", 3.4, INK)
         self.texts = placer.texts
         self.tracks += [segment for leader in placer.leaders for segment in track_boxes(leader, 0.3)]
+
+    def _key(self) -> None:
+        """The marks under the flow axis, those that are used."""
+        duties = [case for case in self.spec.cases if case.flow]
+        marks = [
+            ("o", 3.4, INK, "duty point, with its case", bool(duties)),
+            ("s", 3.2, "none", "NPSHA at the duty", any(case.npsha for case in duties) and len(self.panels) > 0),
+            ("D", 5.0, "none", "required point", self.spec.required is not None),
+            ("o", 2.6, BLUE, "point of the maker's curve", any(pump.head_points for pump in self.spec.pumps)),
+        ]
+        x, y = LEFT, self.bottom + FOOT + 0.6
+        for shape, size, fill, text, used in marks:
+            if used:
+                self.page.mark(x, y, shape, size, fill)
+                self.page.text(x + 2.0, y, text)
+                x += label_width(text) + 7.0
 
     def _lead(self, x: float, y: float, box: Box, off: float) -> None:
         end = nearest_point(box=box, x=x, y=y)
@@ -178,7 +205,8 @@ class _Plot:
         size = (sum(widths) + 1.0, PITCH * len(rows) + 1.6)
         box: Box | None
         if self.strip:
-            box = Box(LEFT, self.bottom + FOOT, LEFT + size[0], self.bottom + FOOT + size[1])
+            top = self.bottom + FOOT + KEY
+            box = Box(LEFT, top, LEFT + size[0], top + size[1])
         else:
             inner = Box(_FRAME.x0 + 1.5, _FRAME.y0 + 1.5, _FRAME.x1 - 1.5, _FRAME.y1 - 1.5)
             box = free_rectangle([size], [*self.texts, *self.tracks], inner, 1.0)
@@ -196,7 +224,7 @@ class _Plot:
     def _rows(self) -> list[list[str]]:
         duties = [case for case in self.spec.cases if case.flow and case.head]
         columns = [("case", [case.case for case in duties])]
-        for attribute, name in (("static", symbol("H", "st")), ("flow", symbol("Q")), ("head", symbol("H"))):
+        for attribute, name in COLUMNS:
             ids = [getattr(case, attribute) for case in duties]
             if not any(ids):
                 continue
@@ -206,3 +234,10 @@ class _Plot:
         if not duties:
             return []
         return [[head for head, _ in columns], *map(list, zip(*(cells for _, cells in columns), strict=True))]
+
+
+def _lowest(heads: list[float]) -> float:
+    """Where the head axis begins: at zero, or higher where that would leave half of the panel empty."""
+    low, high = min(heads), max(heads)
+    start = low - ROOM_BELOW * (high - low)
+    return start if start > 0.25 * high else min(0.0, low)

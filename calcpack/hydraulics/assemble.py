@@ -96,14 +96,15 @@ def _lines(cases: Sequence[Case]) -> dict[str, np.ndarray]:
     index = np.empty((len(cases[0].system.lines), len(cases)), dtype=int)
     for column, case in enumerate(cases):
         for i, line in enumerate(case.system.lines.values()):
-            roughness = line.roughness[case.roughness[line.tag]]
+            state = case.roughness.get(line.tag)
+            roughness = None if state is None else line.roughness[state]  # a line of given friction factor needs none
             states = tuple(state for _, state in equipment_states(case, line)) if line.equipment else ()
             to_outlet = case.system.nodes[line.end].kind == OUTLET
             key = (id(line), id(roughness), to_outlet, *map(id, states))
             place = seen.get(key)
             if place is None:
                 place = seen[key] = len(rows)
-                rows.append(_row(line, roughness.si, states, to_outlet))
+                rows.append(_row(line, 0.0 if roughness is None else roughness.si, states, to_outlet))
             index[i, column] = place
     table = np.array(rows, dtype=float).reshape(len(rows), 9)
     diameter, length, roughness, factor, plain, crane, equipment, fixed, check = table.T

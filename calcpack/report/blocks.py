@@ -33,6 +33,7 @@ from calcpack.report.views import (
 from calcpack.sheets.content import Column, Derivation, Facts, Figure, Ref, Row, Table, Verdicts
 
 NO_VALUE = "–"
+KEPT_WHOLE = 10  # rows up to which a table stays on one page
 
 
 def derivation(desk: Desk, block: Derivation, key: tuple[str, int]) -> DerivationView:
@@ -70,7 +71,7 @@ def table(desk: Desk, block: Table, key: tuple[str, int]) -> TableView:
         anchor = desk.numbering.anchors.get((*key, item), "")
         rows.append(_row(desk, block.columns, row, anchor))
     return TableView(
-        desk.numbering.labels[key], desk.sentence(block.caption), columns, tuple(rows), desk.sentence(block.note)
+        desk.numbering.labels[key], _whole(rows), desk.sentence(block.caption), columns, tuple(rows), desk.sentence(block.note)
     )
 
 
@@ -89,7 +90,7 @@ def verdicts(desk: Desk, block: Verdicts, key: tuple[str, int]) -> VerdictsView:
     for item, entry_id in enumerate(block.ids):
         anchor = desk.numbering.anchors.get((*key, item), "")
         rows.append(_verdict(desk, desk.ledger[entry_id], anchor))
-    return VerdictsView(desk.numbering.labels[key], block.caption, tuple(rows))
+    return VerdictsView(desk.numbering.labels[key], _whole(rows), block.caption, tuple(rows))
 
 
 def figure(desk: Desk, block: Figure, key: tuple[str, int]) -> FigureView:
@@ -146,6 +147,10 @@ def _verdict(desk: Desk, entry: Entry, anchor: str) -> VerdictView:
         anchor, entry.title, entry.case, value, limit, margin, verdict_html(entry.verdict),
         desk.citation(entry.citation), reasons,
     )
+
+
+def _whole(rows: list) -> str:
+    return "whole" if len(rows) <= KEPT_WHOLE else ""
 
 
 def _widths(shares: list[float]) -> list[str]:

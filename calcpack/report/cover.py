@@ -100,7 +100,7 @@ def _open_item(desk: Desk, item: OpenItem) -> OpenItemView:
 
 def _more(desk: Desk, content: CoverContent, count: int) -> Html:
     number = desk.numbering.sheets.get(content.register, "")
-    place = linked(f"sheet {escape(number)}", f"#{sheet_anchor(content.register)}") if number else "the register"
+    place = linked(f"sheet\u00a0{escape(number)}", f"#{sheet_anchor(content.register)}") if number else "the register"
     return Html(f"and {count} more in {place}")
 
 

@@ -30,7 +30,8 @@ def lines(entry: Entry, ledger: Ledger, link: Link, *, boxed: bool) -> tuple[Lin
     if entry.origin == origin.CHECK:
         return (_check(entry, ledger, link),)
     if entry.origin == origin.SERIES:
-        return (LineView(symbol_html(entry.symbol), Html(f"plotted curve of {len(entry.points)} points"), True),)
+        words = f"{symbol_html(entry.symbol)}: plotted curve of {len(entry.points)} points"
+        return (LineView(Html(""), Html(words), True),)
     if entry.choice and math.isnan(entry.value):
         return (LineView(Html(""), Html(f'<b class="r">{escape(entry.choice)}</b>'), True),)
     text = _result(entry, (unit_of(entry, ledger.system), KINDS[entry.kind].coherent_unit(ledger.system)), boxed)

@@ -15,13 +15,15 @@ from calcpack.report.symbols import Html, number_html, symbol_html
 from calcpack.report.typeset import inline, linked
 from calcpack.values import CONFIRMED
 
+_PLAIN = str.maketrans({"²": "2", "³": "3", " ": "", "\u00a0": "", "\u2009": ""})  # spelling that is no difference
+
 
 def notes(desk: Desk, entry: Entry) -> tuple[Html, ...]:
     """Lines of the margin, in reading order."""
     lines = [desk.citation(entry.citation)] if entry.citation.key or entry.citation.text else []
     if entry.note:
         lines.append(desk.sentence(entry.note))
-    if entry.written and entry.written != display_text(entry, desk.ledger.system).replace("\u00a0", " "):
+    if entry.written and entry.written.translate(_PLAIN) != display_text(entry, desk.ledger.system).translate(_PLAIN):
         lines.append(Html(f"as written: {number_html(entry.written)}"))
     if entry.status and entry.status != CONFIRMED:
         lines.append(number_html(entry.status))

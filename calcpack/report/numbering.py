@@ -59,7 +59,7 @@ class Numbering:
         if len(places) > FEW:
             places = {self.sections[home.section]: f"#{section_anchor(home.section)}" for home in reversed(homes)}
         if len(places) > FEW:
-            places = {f"sheet {self.sheets[home.sheet]}": f"#{sheet_anchor(home.sheet)}" for home in reversed(homes)}
+            places = {f"sheet\u00a0{self.sheets[home.sheet]}": f"#{sheet_anchor(home.sheet)}" for home in reversed(homes)}
         return sorted(places.items(), key=lambda place: _in_order(place[0]))
 
     def homeless(self, ledger: Ledger) -> list[str]:
@@ -128,9 +128,9 @@ def _derivations(numbering: Numbering, section: Section, sheet: str) -> None:
 def _block_label(block: Block, sheet: int, tables: Iterator[str], figures: Iterator[str]) -> str:
     match block:
         case Table() | Verdicts():
-            return f"Table {sheet}.{next(tables)}"
+            return f"Table\u00a0{sheet}.{next(tables)}"
         case Figure():
-            return f"Figure {sheet}.{next(figures)}"
+            return f"Figure\u00a0{sheet}.{next(figures)}"
     return ""
 
 
@@ -148,6 +148,6 @@ def _letters() -> Iterator[str]:
 
 def _in_order(label: str) -> tuple[str, tuple]:
     """Sort key: lines before tables before figures, each by number."""
-    word, _, digits = label.rpartition(" ")
+    word, _, digits = label.rpartition("\u00a0")
     parts = digits.split(".")
     return word, tuple((part.isdigit(), int(part) if part.isdigit() else 0, len(part), part) for part in parts)

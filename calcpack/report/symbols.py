@@ -34,9 +34,9 @@ class Html(str):
 
 
 def split(name: str) -> tuple[str, str, str]:
-    """``dh_f`` -> (prefix 'Δ', letter 'h', subscript 'f')."""
-    base, _, subscript = name.partition("_") if name not in GREEK else (name, "", "")
-    prefix = ""
+    """``dh_f`` or ``Delta_h_f`` -> (prefix 'Δ', letter 'h', subscript 'f')."""
+    prefix = DELTA if name.startswith("Delta_") else ""
+    base, _, subscript = name.removeprefix("Delta_").partition("_")
     difference = _DIFFERENCE.match(base)
     if difference:
         prefix, base = DELTA, difference[1]

@@ -9,6 +9,7 @@ from __future__ import annotations
 from collections.abc import Callable
 from dataclasses import dataclass, replace
 from html import escape
+from itertools import pairwise
 
 from calcpack.digits import MINUS, THIN_SPACE, TIMES, digits_written, format_number
 from calcpack.errors import FormulaError
@@ -28,6 +29,7 @@ SUM, SIGMA, PRODUCT, FRACTION, QUANTITY, ATOM = range(6)
 # Widths of the boxes of the style sheet, em.
 _FRACTION_MARGIN = 0.5
 _RADICAL = 0.9
+_BREAKABLE = 28.0  # a product this wide may be broken at a dot, a narrower one only before plus and minus
 _TALL_BRACKETS = 0.9
 _TITLES = {"log10": "log<sub>10</sub>"}
 
@@ -204,11 +206,12 @@ def _product(factors: list[Piece], *, written_out: bool) -> Piece:
         reaches_on = factor.level == SIGMA and place < last  # else it would seem to sum what follows
         if factor.level == SUM or reaches_on or (factor.minus and place):
             factors[place] = bracketed(factor)
-    html, total = factors[0].html, factors[0].width
-    for before, after in zip(factors, factors[1:], strict=False):
-        dotted = written_out or (before.numeric and after.numeric)
-        html += (f" {DOT} " if dotted else GAP) + after.html
-        total += (0.75 if dotted else 0.25) + after.width
+    dots = [written_out or (before.numeric and after.numeric) for before, after in pairwise(factors)]
+    total = sum(factor.width for factor in factors) + sum(0.75 if dot else 0.25 for dot in dots)
+    space = " " if total > _BREAKABLE else GAP
+    html = factors[0].html
+    for dot, factor in zip(dots, factors[1:], strict=True):
+        html += (f"{space}{DOT}{space}" if dot else GAP) + factor.html
     return Piece(
         html, total, PRODUCT, any(factor.tall for factor in factors), all(factor.numeric for factor in factors),
         factors[0].minus,

@@ -67,9 +67,10 @@ class RowView:
 
 @dataclass(frozen=True)
 class TableView:
-    """A table with its label and caption."""
+    """A table with its label and caption; ``style`` is a class."""
 
     label: str
+    style: str
     caption: Html
     columns: tuple[ColumnView, ...]
     rows: tuple[RowView, ...]
@@ -117,9 +118,10 @@ class VerdictView:
 
 @dataclass(frozen=True)
 class VerdictsView:
-    """A table of criteria."""
+    """A table of criteria; ``style`` is a class."""
 
     label: str
+    style: str
     caption: str
     rows: tuple[VerdictView, ...]
 

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Iterator
+from collections.abc import Iterable, Iterator, Sequence
 
 from calcpack.ledger import Entry
 from calcpack.ledger.entry import SERIES
@@ -26,20 +26,25 @@ from calcpack.sheets.registers import TOOL, count
 SHOWS_NUMBER = ("number", "quantity", "choice", "written", "verdict")
 
 
-def fill(job: Job, sheets: Iterable[Sheet]) -> Sheet:
+def fill(job: Job, sheets: Sequence[Sheet]) -> Sheet:
     """Tabulate what ``sheets`` (all others, filled) leave out. Figures and sentences only mention an entry."""
     elsewhere = printed(sheets)
+    examples = _examples(job, sheets)
     curves = [entry for entry in job.ledger.of_origin(SERIES) if entry.id not in elsewhere]
-    rest = [entry for entry in job.ledger if entry.id not in elsewhere and entry.origin != SERIES]
+    rest = [entry for entry in job.ledger if entry.origin != SERIES and entry.id not in {*elsewhere, *examples}]
     sections = []
     if curves:
         rows = tuple(_curve(job, entry) for entry in curves)
-        columns = (Column("Entry", width=2.0), Column("Curve", width=3.2), Column("Points", "", "count", width=0.8),
+        columns = (Column("Entry", width=2.2), Column("Curve", width=3.2), Column("Points", "", "count", width=0.8),
                    Column("From", width=1.3), Column("To", width=1.3), Column("Least", width=1.3),
                    Column("Greatest", width=1.3))
         sections.append(Section("record-curves", "Plotted curves", (
-            Derivation(tuple(entry.id for entry in curves)),
             Table("Plotted curves: points, range of the swept quantity, range of the values", columns, rows),
+        )))
+    if examples:
+        sections.append(Section("record-formulas", "Formulas written out on no other sheet", (
+            Prose("The first use of each; further uses stand in the tables below or beside their results."),
+            Derivation(examples),
         )))
     if rest:
         groups: dict[str, list[Entry]] = {}
@@ -57,8 +62,22 @@ def fill(job: Job, sheets: Iterable[Sheet]) -> Sheet:
 
 def printed(sheets: Iterable[Sheet]) -> set[str]:
     """Ids of the entries that stand on a sheet with their number: derived, in a table, in a list, or judged."""
-    return {entry_id for sheet in sheets for section in sheet.sections for block in section.blocks
-            for entry_id in _ids(block)}
+    return {entry_id for block in _blocks(sheets) for entry_id in _ids(block)}
+
+
+def _examples(job: Job, sheets: Iterable[Sheet]) -> tuple[str, ...]:
+    """The first entry of every formula that no sheet derives, so that each equation stands on paper once."""
+    derived = {job.ledger[entry_id].formula for block in _blocks(sheets) if isinstance(block, Derivation)
+               for entry_id in block.ids}
+    first: dict[str, str] = {}
+    for entry in job.ledger:
+        if entry.formula and entry.formula not in derived and entry.origin != SERIES:
+            first.setdefault(entry.formula, entry.id)
+    return tuple(first.values())
+
+
+def _blocks(sheets: Iterable[Sheet]) -> Iterator[Block]:
+    return (block for sheet in sheets for section in sheet.sections for block in section.blocks)
 
 
 def _ids(block: Block) -> Iterator[str]:
@@ -111,7 +130,9 @@ def _curve(job: Job, entry: Entry) -> Row:
         ("from", entry.points_kind, min(x)), ("to", entry.points_kind, max(x)), ("least", entry.kind, min(y)),
         ("greatest", entry.kind, max(y)))]
     points = count(job, f"{entry.id}/points", len(entry.points), f"{entry.title}: number of points")
-    return Row((entry.id, Ref(entry.id, "title"), Ref(points.id), *(Ref(end, "quantity") for end in ends)))
+    # A curve has no number to show: its empty view as a choice makes this row the place that other sheets link to.
+    name = (Ref(entry.id, "title"), Ref(entry.id, "choice"))
+    return Row((entry.id, name, Ref(points.id), *(Ref(end, "quantity") for end in ends)))
 
 
 def _end(job: Job, entry: Entry, name: str, kind: str, value: float) -> str:

@@ -127,7 +127,7 @@ def _inputs_by_path(job: Job) -> dict[str, list[Value]]:
 
 
 def _pattern(path: str) -> str:
-    """``points.3.0`` -> ``points.*.0``, ``profile.2.elevation`` -> ``profile.*.elevation``, ``flow.4`` -> ``flow.*``."""
+    """``points.3.0`` -> ``points.*.0``, ``profile.2.elevation`` -> ``profile.*.elevation``."""
     parts = path.split(".")
     places = [place for place, part in enumerate(parts) if part.isdigit()]
     for place in places[:-1] if len(places) > 1 and places[-1] == len(parts) - 1 else places:

@@ -43,8 +43,8 @@ def _lines(job: Job) -> Table:
         if line.rating is not None:
             rating = Ref(job.input(f"{line.tag}/rating", line.rating, "p_rat", f"{line.tag}: pressure rating").id)
         rows.append(Row((
-            line.tag, line.start, line.end, line.service or line.description or NONE, size or NONE,
-            pipe.material or NONE, _ref(job, f"{line.tag}/D"), _ref(job, f"{line.tag}/L"), _roughness(job, line),
+            line.tag, line.start, line.end, _spaced(line.service or line.description), size or NONE,
+            _spaced(pipe.material), _ref(job, f"{line.tag}/D"), _ref(job, f"{line.tag}/L"), _roughness(job, line),
             rating,
         )))
     return Table("Line list", columns, tuple(rows))
@@ -135,7 +135,7 @@ def _pump(job: Job, pump: Pump) -> tuple[tuple[str, Cell], ...]:
     rows += _booked(job, tag, (
         (f"Q_1@{normal.id}", "Flow of one unit"), (f"H@{normal.id}", "Head"), (f"eta@{normal.id}", "Efficiency"),
         (f"NPSHR@{normal.id}", "NPSHR"), (f"NPSHA@{normal.id}", "NPSHA"), (f"P_s@{normal.id}", "Shaft power"),
-    ), f", case {case_label(normal)}")
+    ), f", case {normal.id}")
     powers = [f"{tag}/P_s@{case.id}" for case in job.cases if f"{tag}/P_s@{case.id}" in job.ledger]
     if powers:
         rows.append(("Greatest shaft power of the cases", Ref(greatest(job.ledger, powers).id, "quantity")))
@@ -178,6 +178,11 @@ def _node(job: Job, node: Node) -> Row:
     if node.demand is not None:
         demand = Ref(job.input(f"{node.tag}/demand", node.demand, "q", f"{node.tag}: demand").id)
     return Row((node.tag, node.kind, node.description or NONE, elevation, tuple(levels[:-1]) or NONE, gas, demand))
+
+
+def _spaced(name: str) -> str:
+    """A name of the catalog as words, so that it can be broken."""
+    return name.replace("_", " ") or NONE
 
 
 def _capital(words: str) -> str:

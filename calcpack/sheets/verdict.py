@@ -5,7 +5,7 @@ from __future__ import annotations
 from calcpack.ledger import Entry
 from calcpack.ledger.entry import CHECK, MET, MET_WITH_WARNING, NOT_CHECKED, NOT_MET, OUT_OF_RANGE, REFER
 from calcpack.project.model import Pump
-from calcpack.sheets.content import Block, Column, Facts, Prose, Ref, Row, Section, Sheet, Table, Verdicts
+from calcpack.sheets.content import Block, Column, Prose, Ref, Row, Section, Sheet, Table, Verdicts
 from calcpack.sheets.job import Job, case_label, greatest, least
 from calcpack.sheets.registers import count, open_counts, plain
 
@@ -86,8 +86,8 @@ def _results(job: Job) -> tuple[Block, ...]:
     pumps = job.project.system.pumps.values()
     named = [("duty/Q_req", "Required flow"), ("duty/Q_des", "Design flow")]
     named += [(f"{pump.tag}/{symbol}", f"{pump.tag}: {name}") for pump in pumps for symbol, name in SINGLE]
-    facts = tuple((name, Ref(entry_id, "quantity")) for entry_id, name in named if entry_id in job.ledger)
-    blocks: list[Block] = [Facts(facts)] if facts else []
+    single = [f"{name}: {{{entry_id}}}" for entry_id, name in named if entry_id in job.ledger]
+    blocks: list[Block] = [Prose(f"{'; '.join(single)}.")] if single else []
     normal = job.project.case(job.project.normal_case)
     columns = (Column("Result", width=1.9), Column(f"Case {normal.id} (normal)", width=1.5),
                Column("Worst of all cases", width=1.5), Column("Which", width=0.8), Column("Governing case", width=4.3))
