@@ -109,7 +109,7 @@ UNITS: dict[str, Unit] = {
         Unit("J/(kg·K)", "J/(kg*K)", 1.0),
         Unit("kJ/(kg·K)", "kJ/(kg*K)", 1e3),
         Unit("ft·lbf/(slug·°R)", "ft*lbf/(slug*delta_degF)", FOOT * POUND_FORCE / SLUG * 1.8),
-        Unit("Btu/(lb·°F)", "Btu/(lb*delta_degF)", 4186.8),
+        Unit("Btu/(lb·°F)", "Btu_it/(lb*delta_degF)", 4186.8),
         Unit("m/100 m", "m/(100*m)", 0.01),
         Unit("ft/100 ft", "ft/(100*ft)", 0.01),
         Unit("s²/m⁵", "s**2/m**5", 1.0),

@@ -90,10 +90,10 @@ def parse_quantity(text: str, kind: str, system: str) -> tuple[float, str]:
     found = _known_unit(bare)
     if found is None:
         factor, offset = _unusual_factor(written, number, bare, wanted, system), 0.0
-    elif _si_of(found) == wanted.si:
+    elif si_text(found) == wanted.si:
         factor, offset = found.factor, found.offset
     else:
-        raise _wrong_dimension(written, _name_of(_si_of(found)), number, wanted, system)
+        raise _wrong_dimension(written, _name_of(si_text(found)), number, wanted, system)
     _check_pressure_word(written, number, bare, stated, wanted)
     if kind == "head" and (found is None or found.text not in ("m", "ft")):
         raise UnitError(
@@ -114,6 +114,11 @@ def parse_quantity(text: str, kind: str, system: str) -> tuple[float, str]:
 def typed(unit: str) -> str:
     """A glossary unit as it is typed on a plain keyboard: "m³/h" -> "m3/h"."""
     return _TYPED.get(unit, unit)
+
+
+def si_text(unit: Unit) -> str:
+    """SI unit text that stands for the dimension of a glossary unit."""
+    return _si_texts()[unit.text]
 
 
 def with_article(title: str) -> str:
@@ -231,7 +236,7 @@ def _pint_dimension_names() -> dict:
 
 
 def _unknown_unit(written: str, unit: str, number: str, wanted: Kind, system: str) -> UnitError:
-    known = {_spelling(text): typed(text) for text, entry in UNITS.items() if _si_of(entry) == wanted.si}
+    known = {_spelling(text): typed(text) for text, entry in UNITS.items() if si_text(entry) == wanted.si}
     lower = {spelling.lower(): spelling for spelling in known}
     near = difflib.get_close_matches(_spelling(unit).lower(), lower, n=1, cutoff=0.6)
     word = f" {wanted.word}" if wanted.word else ""
@@ -270,11 +275,6 @@ def _name_of(si: str) -> str:
 def _si_texts() -> dict[str, str]:
     printed = {text: kind.si for kind in KINDS.values() for text in (*kind.coherent, *kind.display)}
     return {text: _SI_OF_OTHERS.get(text, printed.get(text, text)) for text in UNITS}
-
-
-def _si_of(unit: Unit) -> str:
-    """SI unit text that stands for the dimension of a glossary unit."""
-    return _si_texts()[unit.text]
 
 
 @cache

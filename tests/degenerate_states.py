@@ -43,8 +43,8 @@ def two_duties():
 
 
 def high_point():
-    """Crest at 14 m in a line that ends at 8 m."""
-    return lift(8.0, length=600.0, profile=[(0, 0), (400, 14.0), (600, 7.0)])
+    """Crest at 18 m in a line that ends at 8 m, a third of the way before its end."""
+    return lift(8.0, length=600.0, profile=[(0, 0), (400, 18.0), (600, 7.0)])
 
 
 def impossible_siphon():

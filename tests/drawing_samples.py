@@ -1,16 +1,12 @@
-"""Three invented systems as frozen models with small ledgers, for the tests of the drawings.
-
-The inputs and results are those of the demonstration projects; curves are computed here from the same inputs.
-"""
+"""Invented systems as frozen models with small ledgers, for the tests of the schematic."""
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field, replace
+from dataclasses import dataclass
 
 import numpy as np
 
-from calcpack.drawings.specs import CaseCurve, GradeLineSpec, Level, PumpCurve, SystemCurveSpec
-from calcpack.formulas import pipe_flow
+from calcpack.drawings.schematic_labels import SchematicLabels
 from calcpack.ledger import Ledger
 from calcpack.project import model as m
 from calcpack.quantities import UNITS
@@ -63,8 +59,8 @@ def pump(tag: str, shaft: str, points: list[tuple], *, installed: int = 1, bep: 
     )  # fmt: skip
     return m.Pump(
         tag, "centrifugal pump", installed, 1, f"{tag}.suction", f"{tag}.discharge", val(shaft, "elevation"),
-        val("2950 rpm", "rotational_speed"), 1, curve, val(bep, "flow"), val("0.7 ", "fraction"), val("1.2 ", "fraction"),
-        val("30 m³/h", "flow"), val("1.3 ", "ratio"), val("0.6 m", "head"), None, None, None,
+        val("2950 rpm", "rotational_speed"), 1, curve, val(bep, "flow"), val("0.7 ", "fraction"),
+        val("1.2 ", "fraction"), val("30 m³/h", "flow"), val("1.3 ", "ratio"), val("0.6 m", "head"), None, None, None,
     )  # fmt: skip
 
 
@@ -74,7 +70,6 @@ class Sample:
 
     project: m.Project
     ledger: Ledger
-    extra: dict = field(default_factory=dict)
 
 
 def make_project(
@@ -86,8 +81,8 @@ def make_project(
         for port in (item.suction, item.discharge):
             nodes = [*nodes, m.Node(port, m.PUMP_PORT, "", item.shaft_elevation)]
     water = m.LiquidState(
-        "normal", val("15 °C", "temperature"), val("999.10 kg/m³", "density"), val("1.13757 mPa·s", "dynamic_viscosity"),
-        val("1.7057 kPa", "absolute_pressure"),
+        "normal", val("15 °C", "temperature"), val("999.10 kg/m³", "density"),
+        val("1.13757 mPa·s", "dynamic_viscosity"), val("1.7057 kPa", "absolute_pressure"),
     )  # fmt: skip
     loss = m.LossState("clean", "quadratic", val("0.3 m", "head"), val("90 m³/h", "flow"))
     system = m.System(
@@ -103,8 +98,8 @@ def make_project(
     )
     document = m.Document(name, name, "X-001", "calculation", "invented", "A", "draft", "2026-11-30")
     return m.Project(
-        ".", document, units, (), (), "", (), m.Requirement(None, None, None, None), None, system, made, "1", (), (), (),
-        (), {}, (), (),
+        ".", document, units, (), (), "", (), m.Requirement(None, None, None, None), None, system, made, "1",
+        (), (), (), (), {}, (), (),
     )  # fmt: skip
 
 
@@ -147,7 +142,8 @@ HOLLINS_CURVE = [
 ]  # fmt: skip
 COLDHARBOUR_CURVE = [
     (0, 238.00, 0, 1.600), (60, 235.78, 0.2419, 1.658), (120, 230.32, 0.4468, 1.830), (180, 221.62, 0.6090, 2.118),
-    (240, 209.68, 0.7227, 2.522), (300, 194.50, 0.7823, 3.040), (360, 176.08, 0.7820, 3.674), (420, 154.42, 0.7163, 4.422),
+    (240, 209.68, 0.7227, 2.522), (300, 194.50, 0.7823, 3.040), (360, 176.08, 0.7820, 3.674),
+    (420, 154.42, 0.7163, 4.422),
 ]  # fmt: skip
 COLDHARBOUR_PROFILE = ((0, 713.5), (180, 760), (420, 835), (640, 884), (1050, 868), (1420, 877))
 
@@ -188,11 +184,12 @@ def hollins() -> Sample:
         point("N-203", m.JUNCTION, "3.0 m"),
         point("HP-201", m.JUNCTION, "14.0 m"),
     ]
+    suction = "butterfly_valve, concentric_reducer"
+    discharge = "expander, swing_check_valve_angled, butterfly_valve"
     branch = "8 elbow_90_long_radius, 2 butterfly_valve, tee_branch, tee_run"
     lines = [
-        *(line(f"L-201{x}", "V-201", f"P-201{x}.suction", "DN 100", "butterfly_valve, concentric_reducer") for x in "ABC"),
-        *(line(f"L-202{x}", f"P-201{x}.discharge", "N-201", "DN 100", "expander, swing_check_valve_angled, butterfly_valve")
-          for x in "ABC"),
+        *(line(f"L-201{x}", "V-201", f"P-201{x}.suction", "DN 100", suction) for x in "ABC"),
+        *(line(f"L-202{x}", f"P-201{x}.discharge", "N-201", "DN 100", discharge) for x in "ABC"),
         line("L-203", "N-201", "HP-201", "DN 150", "5 elbow_90_long_radius, butterfly_valve", "DC-201"),
         line("L-204", "HP-201", "N-202", "DN 150", "5 elbow_90_long_radius"),
         line("L-205A", "N-202", "N-203", "DN 125", branch, "CB-A, FCV-A, BV-A"),
@@ -223,7 +220,8 @@ def coldharbour() -> Sample:
         tank("TK-302", "settling pond", normal="877.00 m"),
     ]
     lines = [
-        line("L-301", "SU-301", "P-301.suction", "DN 300", "foot_valve_hinged, elbow_90_long_radius, eccentric_reducer"),
+        line("L-301", "SU-301", "P-301.suction", "DN 300",
+             "foot_valve_hinged, elbow_90_long_radius, eccentric_reducer"),
         line("L-302", "P-301.discharge", "TK-302", "DN 250",
              "expander, nozzle_check_valve, gate_valve, 4 elbow_90_long_radius, 10 elbow_45, exit",
              profile=COLDHARBOUR_PROFILE),
@@ -237,158 +235,58 @@ def coldharbour() -> Sample:
     return Sample(project, book(project, dict.fromkeys(bores, 343.87), bores, {"P-301": (343.87, 181.35)}))
 
 
-@dataclass(frozen=True)
-class Way:
-    """Pipes (bore m, length m, roughness m, sum of K, equipment head m, at flow m3/h) between two levels of a case."""
-
-    case: str
-    static: float
-    pipes: tuple[tuple[float, ...], ...]
-    npsh_static: float = 0.0  # suction side: (p_atm - p_v)/(rho g) + z_s - z_p
-    suction: int = 1  # how many of the pipes lie before the pump
-
-    def loss(self, flow: float, pipes: tuple[tuple[float, ...], ...]) -> float:
-        """Head loss (m) at ``flow`` (m3/h) in water of 15 degC."""
-        total = 0.0
-        for bore, length, roughness, k, head, rated in pipes:
-            speed = flow / HOUR / (np.pi * bore**2 / 4)
-            factor = pipe_flow.friction_factor(roughness / bore, max(999.1 * speed * bore / 1.13757e-3, 1.0))
-            total += (factor * length / bore + k) * speed**2 / (2 * G) + (head * (flow / rated) ** 2 if rated else 0.0)
-        return float(total)
-
-    def head(self, flow: float) -> float:
-        """System head (m)."""
-        return self.static + self.loss(flow, self.pipes)
-
-    def npsha(self, flow: float) -> float:
-        """NPSHA (m)."""
-        return self.npsh_static - self.loss(flow, self.pipes[: self.suction])
+def looped() -> Sample:
+    """A reservoir over a looped network with demands at nearly one elevation."""
+    nodes = [
+        tank("TK-1", "reservoir", normal="60.0 m"), point("A", m.JUNCTION, "20.0 m"),
+        point("B", m.JUNCTION, "18.0 m", demand="20 m³/h"), point("C", m.JUNCTION, "22.0 m"),
+        point("D", m.JUNCTION, "19.0 m", demand="30 m³/h"), point("E", m.JUNCTION, "21.0 m"),
+        point("F", m.JUNCTION, "15.0 m", demand="25 m³/h"),
+    ]  # fmt: skip
+    ways = {
+        "L-1": ("TK-1", "A", 75.0), "L-2": ("A", "B", 40.0), "L-3": ("A", "C", 35.0), "L-4": ("B", "D", 20.0),
+        "L-5": ("C", "D", 12.0), "L-6": ("C", "E", 23.0), "L-7": ("D", "F", 2.0), "L-8": ("E", "F", 23.0),
+    }  # fmt: skip
+    lines = [line(tag, start, end, "DN 150", "gate_valve") for tag, (start, end, _) in ways.items()]
+    project = make_project("looped", nodes, lines, [], {}, [("1", "normal", "normal", {})], datum="AD")
+    flows = {tag: flow for tag, (_, _, flow) in ways.items()}
+    return Sample(project, book(project, flows, dict.fromkeys(ways, 0.15), {}))
 
 
-def book_curves(ledger: Ledger, tag: str, points: list[tuple], ways: list[Way], units: int = 1) -> SystemCurveSpec:
-    """Series of pump and system, duty points by bisection, and the list that a caller would hand to the plot."""
-    flow, head, efficiency, npshr = (np.array(column) for column in zip(*points, strict=True))
-    grid = np.linspace(0.0, flow[-1], 36)
-    fits = {name: np.polyfit(flow, values, 3) for name, values in
-            (("head", head), ("efficiency", efficiency), ("npshr", npshr))}  # fmt: skip
-    ids: dict[str, tuple] = {}
-    for name, symbol, kind, values in (
-        ("head", "H", "head", head), ("efficiency", "eta", "efficiency", efficiency), ("npshr", "NPSHR", "head", npshr),
-    ):  # fmt: skip
-        curve = np.maximum(np.polyval(fits[name], grid), 0.0)
-        ledger.series(f"curve/{tag}/{name}", name, symbol, kind, zip(grid / HOUR, curve, strict=True), points_kind="flow")
-        pairs = []
-        for k, (x, y) in enumerate(zip(flow, values, strict=True), start=1):
-            ledger.given(f"{tag}/Q_{k}", val(f"{x} m³/h", "flow"), "Q", "flow")
-            ledger.given(f"{tag}/{symbol}_{k}", val(f"{y} m" if kind == "head" else f"{y} ", kind), symbol, name)
-            pairs.append((f"{tag}/Q_{k}", f"{tag}/{symbol}_{k}"))
-        ids[name] = tuple(pairs)
-
-    def power(at: float) -> float:
-        return float(999.1 * G * at / HOUR * np.polyval(fits["head"], at) / np.polyval(fits["efficiency"], at))
-
-    ledger.series(f"curve/{tag}/power", "shaft power", "P_s", "power",
-                  [(at / HOUR, power(at)) for at in grid[4:]], points_kind="flow")  # fmt: skip
-    cases = []
-    for way in ways:
-        c = way.case
-        total = grid * units
-        ledger.series(f"curve/system/{tag}@{c}", "system", "H_sys", "head",
-                      [(at / HOUR, way.head(at)) for at in total], points_kind="flow")  # fmt: skip
-        ledger.series(f"curve/npsha/{tag}@{c}", "NPSHA", "NPSHA", "head",
-                      [(at / HOUR, way.npsha(at)) for at in total], points_kind="flow")  # fmt: skip
-        low, high = 0.0, float(flow[-1])
-        for _ in range(60):
-            middle = (low + high) / 2
-            below = np.polyval(fits["head"], middle) > way.head(middle * units)
-            low, high = (middle, high) if below else (low, middle)
-        duty = {
-            "Q": (low * units / HOUR, "flow"), "H": (way.head(low * units), "head"), "H_st": (way.static, "head"),
-            "eta": (np.polyval(fits["efficiency"], low), "efficiency"), "P_s": (power(low), "power"),
-            "NPSHA": (way.npsha(low * units), "head"), "NPSHR": (np.polyval(fits["npshr"], low), "head"),
-        }  # fmt: skip
-        for symbol, (value, kind) in duty.items():
-            ledger.found(f"duty/{tag}/{symbol}@{c}", value, symbol, symbol, kind, source="TOOL", residual=0.0)
-        at = f"duty/{tag}/"
-        cases.append(
-            CaseCurve(c, f"curve/system/{tag}@{c}", f"{at}Q@{c}", f"{at}H@{c}", f"{at}H_st@{c}", f"{at}eta@{c}",
-                      f"{at}NPSHA@{c}", f"{at}NPSHR@{c}", f"{at}P_s@{c}", f"curve/npsha/{tag}@{c}")
-        )  # fmt: skip
-    curve = PumpCurve(
-        tag, f"curve/{tag}/head", f"curve/{tag}/efficiency", f"curve/{tag}/npshr", f"curve/{tag}/power", ids["head"],
-        ids["efficiency"], ids["npshr"], tuple(range(1, units + 1)),
+def branched(units: str = "US") -> Sample:
+    """Two of three pumps feed three deliveries; one line runs against its drawing."""
+    nodes = [
+        tank("TK-1", "wet well", elevation="1.0 m", min="2.0 m", normal="3.0 m", max="4.0 m"),
+        point("N-1", m.JUNCTION, "2.5 m"), point("N-2", m.JUNCTION, "12.0 m"),
+        point("O-1", m.OUTLET, "25.0 m", "north tank"), point("O-2", m.OUTLET, "18.0 m", "middle tank"),
+        tank("TK-9", "south tank", elevation="8.0 m", normal="9.0 m", max="10.0 m"),
+    ]  # fmt: skip
+    lines = [
+        line("L-1", "TK-1", "P-1.suction", "DN 200", "gate_valve, eccentric_reducer"),
+        line("L-2", "P-1.discharge", "N-1", "DN 150", "expander, swing_check_valve_angled, gate_valve"),
+        line("L-3", "N-1", "O-1", "DN 100", "5 gate_valve"), line("L-4", "N-1", "N-2", "DN 100", "globe_valve", "FM-1"),
+        line("L-5", "N-2", "O-2", "DN 80", "ball_valve"), line("L-6", "N-2", "TK-9", "DN 80", "sight_glass"),
+    ]  # fmt: skip
+    project = make_project(
+        "branched", nodes, lines, [pump("P-1", "1.5 m", LARKMERE_CURVE, installed=3)],
+        {"FM-1": ("flow_meter", "flow meter")}, [("1", "normal", "normal", {"P-1": 2})], datum="AD", units=units,
     )  # fmt: skip
-    return SystemCurveSpec(tuple(cases), (curve,))
+    flows = {"L-1": 75.0, "L-2": 75.0, "L-3": 67.0, "L-4": 8.0, "L-5": 20.0, "L-6": -12.0}
+    return Sample(project, book(project, flows, dict.fromkeys(flows, 0.15), {"P-1": (75.0, 44.0)}))
 
 
-def larkmere_curves(units: str = "SI") -> tuple[Ledger, SystemCurveSpec]:
-    """Five cases, a required point, preferred region and motor rating."""
-    ledger = Ledger(units)
-    ways = []
-    for case, level, eps, strainer, npsh in (
-        ("1", 11.40, 0.0457e-3, 0.30, 10.07), ("2", 10.60, 0.15e-3, 1.20, 10.07), ("3", 12.20, 0.0457e-3, 0.30, 10.07),
-        ("4", 10.60, 0.0457e-3, 1.20, 10.01), ("5", 11.40, 0.0457e-3, 0.31, 10.15),
-    ):  # fmt: skip
-        pipes = (
-            (0.20272, 9.5, eps, 1.0565, strainer, 90.0), (0.15405, 6.0, eps, 2.8280, 0.0, 0.0),
-            (0.15405, 685.0, eps, 4.2783, 0.0, 0.0),
-        )  # fmt: skip
-        ways.append(Way(case, 44.50 - level, pipes, npsh + level - 9.20))
-    spec = book_curves(ledger, "P-101", LARKMERE_CURVE, ways)
-    for entry_id, text, kind in (
-        ("duty/Q_des", "94.5 m³/h", "flow"), ("duty/H_des", "42.29 m", "head"), ("P-101/Q_BEP", "100 m³/h", "flow"),
-        ("P-101/r_low", "0.70 ", "fraction"), ("P-101/r_high", "1.20 ", "fraction"),
-        ("P-101/Q_min", "30 m³/h", "flow"), ("P-101/P_m", "22 kW", "power"),
-    ):  # fmt: skip
-        ledger.given(entry_id, val(text, kind), entry_id.rpartition("/")[2], entry_id)
-    more = {"required": ("duty/Q_des", "duty/H_des"), "best_flow": "P-101/Q_BEP", "motor_rating": "P-101/P_m",
-            "preferred": ("P-101/r_low", "P-101/r_high"), "minimum_flow": "P-101/Q_min"}  # fmt: skip
-    return ledger, replace(spec, **more)
+def labels(sample: Sample, **more) -> SchematicLabels:
+    """Everything that the sample's ledger holds, as a caller would list it for case 1."""
+    ledger, system = sample.ledger, sample.project.case("1").system
 
+    def booked(*ids: str) -> tuple[str, ...]:
+        return tuple(one for one in ids if one in ledger)
 
-def hollins_curves() -> tuple[Ledger, SystemCurveSpec]:
-    """A closed loop: no static head, one and two pumps in parallel."""
-    ledger = Ledger("SI")
-    ways = [
-        Way("1", 0.0, ((0.15405, 4.0, 0.0457e-3, 1.4, 0.0, 0.0), (0.15405, 140.0, 0.0457e-3, 4.02, 17.3, 97.7)), 25.3),
-        Way("2", 0.0, ((0.15405, 4.0, 0.0457e-3, 1.4, 0.0, 0.0), (0.15405, 140.0, 0.0457e-3, 4.02, 18.3, 97.7)), 25.3),
-    ]
-    spec = book_curves(ledger, "P-201", HOLLINS_CURVE, ways, units=2)
-    ledger.given("P-201/Q_BEP", val("52 m³/h", "flow"), "Q_BEP", "best efficiency")
-    return ledger, replace(spec, best_flow="P-201/Q_BEP")
-
-
-def coldharbour_curves() -> tuple[Ledger, SystemCurveSpec]:
-    """High static head, four cases."""
-    ledger = Ledger("SI")
-    ways = []
-    for case, level, eps in (("1", 712.0, 0.0457e-3), ("2", 711.2, 0.30e-3), ("3", 712.8, 0.0457e-3),
-                             ("4", 711.2, 0.0457e-3)):  # fmt: skip
-        pipes = ((0.3048, 7.5, eps, 1.2133, 0.0, 0.0), (0.25451, 1420.0, eps, 5.0479, 0.0, 0.0))
-        ways.append(Way(case, 877.0 - level, pipes, 9.115 + level - 713.5))
-    return ledger, book_curves(ledger, "P-301", COLDHARBOUR_CURVE, ways)
-
-
-def coldharbour_grade() -> tuple[Ledger, GradeLineSpec]:
-    """Case 1 over the rising main: axis, grade lines, vapour limit, rating."""
-    ledger = Ledger("SI")
-    axis = [(float(c) + 7.5, float(z)) for c, z in COLDHARBOUR_PROFILE]
-    suction, end = [(0.0, 712.0), (7.5, 711.86)], 877.0
-    rise = 1.878**2 / (2 * G)
-    hydraulic = [(x, 893.2 - (893.2 - end) * (x - 7.5) / 1420.0) for x, _ in axis]
-    for name, symbol, points in (
-        ("axis", "z", axis), ("hgl", "z_h", [*suction, *hydraulic]),
-        ("egl", "H", [*suction, *((x, z + rise) for x, z in hydraulic)]),
-        ("vapour", "z_v", [(x, z - 9.11) for x, z in axis]), ("rating", "z_r", [(x, z + 251.9) for x, z in axis]),
-        ("standstill", "z_0", [(axis[0][0], end), (axis[-1][0], end)]),
-    ):  # fmt: skip
-        ledger.series(f"grade/{name}", name, symbol, "elevation", points, points_kind="length")
-    ledger.given("SU-301/z@normal", val("712.00 m", "elevation"), "z", "level")
-    ledger.given("TK-302/z@normal", val("877.00 m", "elevation"), "z", "level")
-    ledger.found("L-302/m@1", 1.81, "m", "grade above axis", "head", source="TOOL", residual=0.0, digits=3)
-    ledger.found("L-302/p@1", 1.81 * 1012 * G, "p", "pressure", "gauge_pressure", source="TOOL", residual=0.0, digits=3)
-    return ledger, GradeLineSpec(
-        "case 1, normal level, new", "grade/axis", "grade/hgl", "grade/egl", "grade/vapour", "grade/rating",
-        "grade/standstill", (Level(0.0, "SU-301", "SU-301/z@normal"), Level(1427.5, "TK-302", "TK-302/z@normal")),
-        "P-301", 7.5, 647.5, ("L-302/m@1", "L-302/p@1"),
+    return SchematicLabels(
+        "1", {tag: booked(f"{tag}/Q@1", f"{tag}/V@1") for tag in system.lines},
+        {tag: booked(f"{tag}/p_g", f"{tag}/Q", *(() if node.levels else (f"{tag}/z",)))
+         for tag, node in system.nodes.items()},
+        {tag: {name: f"{tag}/z@{name}" for name in node.levels} for tag, node in system.nodes.items() if node.levels},
+        {tag: booked(f"{tag}/z", f"{tag}/Q@1", f"{tag}/H@1") for tag in system.pumps},
+        {tag: f"{tag}/z_high" for tag in system.lines if f"{tag}/z_high" in ledger}, **more,
     )  # fmt: skip

@@ -36,7 +36,8 @@ LINES = {"L-101": ("suction line", 9.5, 202.72), "L-102": ("pump discharge", 6.0
 FITTINGS = (("45° bend", 8, 16.0), ("90° long-radius elbow", 6, 14.0), ("gate valve", 1, 8.0),
             ("swing check valve, angled seat", 1, 100.0), ("butterfly valve", 2, 45.0))  # fmt: skip
 SVG = (
-    '<svg xmlns="http://www.w3.org/2000/svg" width="170mm" height="85mm" viewBox="0 0 400 200" font-family="CP Sans" font-size="7">'
+    '<svg xmlns="http://www.w3.org/2000/svg" width="170mm" height="85mm" viewBox="0 0 400 200" '
+    'font-family="CP Sans" font-size="7">'
     '<path d="M40 170H380M40 170V20" stroke="#000" fill="none"/><path d="M40 140Q200 130 380 30" stroke="#000" '
     'fill="none" stroke-width="1.5"/><text x="200" y="192">Q / (m³/h)</text><text x="60" y="30">H / m</text></svg>'
 )
@@ -66,7 +67,8 @@ def book(ledger: Ledger) -> None:
 
 def _book_line(ledger: Ledger, tag: str) -> None:
     _, length, bore = LINES[tag]
-    ledger.given(f"{tag}/L", value(f"{length} m", "length", length, f"isometric LK-ISO-{tag[-3:]} rev C"), "L", "Length")
+    isometric = f"isometric LK-ISO-{tag[-3:]} rev C"
+    ledger.given(f"{tag}/L", value(f"{length} m", "length", length, isometric), "L", "Length")
     ledger.given(f"{tag}/D_o", value(f"{bore + 14.22:.2f} mm", "diameter", bore * 1e-3 + 0.01422, "B36.10M", LOOKED_UP),
                  "D_o", "Outside diameter")
     ledger.given(f"{tag}/t", value("7.11 mm", "diameter", 0.00711, "B36.10M", LOOKED_UP), "t", "Wall thickness")
@@ -154,8 +156,9 @@ def _check(ledger: Ledger, key: str, title: str, have: Entry, limit: Entry, comp
 
 def sheets(ledger: Ledger) -> tuple[Sheet, ...]:
     """Seven sheets with every kind of block; one is left out."""
-    return (_verdict_sheet(ledger), _inputs(ledger), Sheet("sump", "Intake and sump", omitted="the project has no sump"),
-            _losses(), _suction(), _curve(), _references(), _listing())
+    sump = Sheet("sump", "Intake and sump", omitted="the project has no sump")
+    return (_verdict_sheet(ledger), _inputs(ledger), sump, _losses(), _suction(), _curve(), _references(),
+            _listing())
 
 
 def _verdict_sheet(ledger: Ledger) -> Sheet:
@@ -172,8 +175,8 @@ def _inputs(ledger: Ledger) -> Sheet:
                       Ref(one.id, "status"), Ref(one.id, "used"))) for one in given)
     columns = (Column("input", width=2.6), Column("symbol", width=0.8), Column("value", width=1.4),
                Column("source", width=2.4), Column("status", width=1.2), Column("used in", width=1.6))
-    facts = Facts((("Site elevation", Ref("site/z", "quantity")), ("Atmospheric pressure", Ref("site/p_atm", "quantity")),
-                   ("Liquid", "clear water")))
+    facts = Facts((("Site elevation", Ref("site/z", "quantity")),
+                   ("Atmospheric pressure", Ref("site/p_atm", "quantity")), ("Liquid", "clear water")))
     return Sheet("inputs", "Inputs and assumptions", (
         Section("basis", "Site and liquid", (facts, Derivation(("site/p_atm",)),
                                              Prose("Measured pressure is to replace this estimate.", "note"))),
@@ -244,7 +247,8 @@ def content(ledger: Ledger, *, draft: bool = False, preliminary: Preliminary | N
     """The whole package around the sample sheets."""
     cover = CoverContent(
         people=(Person("originator", "A. Example", "Example Engineers (invented)"), Person("checker", "B. Example"),
-                Person("approver", "C. Example"), Person("responsible engineer", "D. Example", licence="licence 00000")),
+                Person("approver", "C. Example"),
+                Person("responsible engineer", "D. Example", licence="licence 00000")),
         revisions=(RevisionNote("A", "2026-10-02", "first issue for comment"),
                    RevisionNote("B", "2026-11-30", "rising main rerouted, roughness of aged pipe raised")),
         documents=(SourceDocument("LK-ISO-103", "isometric of the rising main", "C", "2026-09-14"),),

@@ -9,6 +9,7 @@ import pikepdf
 import pytest
 from fontTools.pens.recordingPen import DecomposingRecordingPen
 from fontTools.ttLib import TTFont
+from report_sample import SVG, content, ledger
 
 from calcpack.digits import MINUS, THIN_SPACE, TIMES
 from calcpack.errors import RenderError
@@ -18,7 +19,6 @@ from calcpack.report import fonts
 from calcpack.report.pages import render_html
 from calcpack.report.pdf import write_pdf
 from calcpack.report.symbols import GREEK, split
-from report_sample import SVG, content, ledger
 
 FACES = sorted(path.stem for path in fonts.FONTS.glob("*.ttf"))
 OPERATORS = f"Σ√≤≥≈·{TIMES}{MINUS}∞→±°|()–"
@@ -117,3 +117,11 @@ def _outline(font: TTFont, glyph: int) -> list:
 def _outline_of(face: str, char: str) -> list:
     with TTFont(fonts.FONTS / f"{face}.ttf") as font:
         return _outline(font, font.getGlyphID(font.getBestCmap()[ord(char)]))
+
+
+def test_fonts_of_the_machine_are_never_used():
+    """Whatever family a text asks for, it is set in a bundled one."""
+    page = '<html lang="en"><title>x</title><p style="font-family:DejaVu Sans,monospace">Ag1</p></html>'
+    with pikepdf.open(io.BytesIO(write_pdf(page).pdf)) as document:
+        names = [str(font.BaseFont) for font in document.pages[0].Resources.Font.values()]
+    assert names and all("CP-" in name for name in names), names

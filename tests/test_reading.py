@@ -13,6 +13,7 @@ problems  every problem that must be reported, and no other:
             exactly  the whole message, where it is fixed
 """
 
+import ast
 import re
 import shutil
 import subprocess
@@ -23,9 +24,11 @@ import pytest
 import yaml
 
 from calcpack.errors import ProjectError
-from calcpack.project import load
-from calcpack.project.schema.export import json_schema
+from calcpack.project import json_schema, load
+from calcpack.project.schema.cases import PURPOSES
+from calcpack.project.schema.document import LimitsInput
 from calcpack.project.starter import write_starter
+from calcpack.sheets import basis
 from calcpack.values import CONFIRMED, LOOKED_UP, SUPPLIED, UNCONFIRMED
 
 TESTS = Path(__file__).parent
@@ -334,7 +337,7 @@ def test_a_system_may_have_no_pumps(tmp_path):
     edits = {
         "system.yaml": [["    to: P-01.suction", "    to: J-01"], ["    from: P-01.discharge\n    to: J-01",
                                                                  "    from: J-01\n    to: J-02"],
-                        ["  J-01:\n", "  J-02: {type: junction, elevation: 0 m}\n  J-01:\n"],
+                        ["  J-01:\n", "  J-02: {type: junction, elevation: 0.5 m}\n  J-01:\n"],
                         ["  L-03:\n    from: J-01", "  L-03:\n    from: J-02"]],
         "pumps.yaml": "{}\n",
         "cases.yaml": [["pumps: {P-01: 1}\nlow", "pumps: {}\nlow"], ["pumps: {P-01: 1}\n  set", "pumps: {}\n  set"]],
@@ -379,6 +382,24 @@ def test_the_json_schema_describes_every_key():
     assert re.search(length, "9.5 m") and re.search(length, "1 980 m") and not re.search(length, "685")
     assert {"from", "to", "pipe", "length"} == set(definitions["LineInput"]["required"])
     assert not definitions["LineInput"]["additionalProperties"]
+
+
+def test_every_limit_that_a_sheet_asks_for_can_be_set(tmp_path):
+    """The sheets call house_limit(job, name, kind, text, ...): name, kind and text must do as an input."""
+    asked = set()
+    for path in sorted((TESTS.parent / "calcpack" / "sheets").glob("*.py")):
+        for node in ast.walk(ast.parse(path.read_text(encoding="utf-8"))):
+            if isinstance(node, ast.Call) and getattr(node.func, "id", "") == "house_limit":
+                asked.add(tuple(argument.value for argument in node.args[1:4]))
+    assert len(asked) >= 8
+    limits = "".join(f"  {name}: {text}\n" for name, _, text in sorted(asked))
+    project = load(edited(tmp_path, {"project.yaml": [["normal_case:", f"limits:\n{limits}normal_case:"]]}))
+    assert {(name, value.kind, value.text) for name, value in project.limits.items()} == asked
+    assert set(project.limits) == set(LimitsInput.model_fields) - {"source", "status"}
+
+
+def test_purposes_are_those_that_the_basis_explains():
+    assert set(PURPOSES) == set(basis.PURPOSES)
 
 
 def references(node):

@@ -6,6 +6,7 @@ import re
 from html.parser import HTMLParser
 
 import pytest
+from report_sample import ledger
 
 from calcpack.errors import FormulaError
 from calcpack.formulas import FORMULAS, fittings, liquid, pipe_flow, pump
@@ -18,7 +19,6 @@ from calcpack.report.derivation import COLUMN, lines
 from calcpack.report.linear import linear
 from calcpack.report.symbols import number_html, number_width, symbol_html, symbol_text
 from calcpack.report.typeset import inline, substituted, symbolic
-from report_sample import ledger
 
 G = "\u00a0"  # the gap between symbols
 
@@ -76,7 +76,8 @@ def numbers(text: str, **values: float) -> str:
     [
         ("V", "<i>V</i>", "V"), ("h_f", "<i>h</i><sub>f</sub>", "h_f"), ("rho", "<i>ρ</i>", "ρ"),
         ("eta_m", "<i>η</i><sub>m</sub>", "η_m"), ("K_i", "<i>K</i><sub><i>i</i></sub>", "K_i"),
-        ("Delta_H_1", "Δ<i>H</i><sub>1</sub>", "ΔH_1"), ("NPSHA", "<i>NPSHA</i>", "NPSHA"), ("dp", "Δ<i>p</i>", "Δp"), ("pi", "π", "π"),
+        ("Delta_H_1", "Δ<i>H</i><sub>1</sub>", "ΔH_1"), ("NPSHA", "<i>NPSHA</i>", "NPSHA"),
+        ("dp", "Δ<i>p</i>", "Δp"), ("pi", "π", "π"),
         ("f_2000", "<i>f</i><sub>2000</sub>", "f_2000"), ("p_s_max", "<i>p</i><sub>s,max</sub>", "p_s,max"),
     ],
 )  # fmt: skip

@@ -13,7 +13,6 @@ from functools import cache
 from typing import TYPE_CHECKING
 
 from calcpack.drawings.fonts import FAMILIES, MATH, POINT, SYMBOLS, font_folder
-from calcpack.drawings.geometry import Box
 from calcpack.drawings.svg import BLUE, INK, PALE, PAPER, number
 from calcpack.drawings.ticks import round_ticks, tick_texts
 from calcpack.quantities import Unit
@@ -127,16 +126,6 @@ class Page:
         self.figure.add_artist(
             Line2D([x / self.width], [1 - y / self.height], marker=shape, markersize=size, markerfacecolor=fill,
                    markeredgecolor=fill if fill == BLUE else INK, markeredgewidth=0.8, zorder=5)
-        )  # fmt: skip
-
-    def box(self, box: Box) -> None:
-        """A white rectangle with a thin edge."""
-        from matplotlib.patches import Rectangle
-
-        width, height = (box.x1 - box.x0) / self.width, (box.y1 - box.y0) / self.height
-        self.figure.add_artist(
-            Rectangle((box.x0 / self.width, 1 - box.y1 / self.height), width, height,
-                      transform=self.figure.transFigure, facecolor=PAPER, edgecolor=INK, linewidth=0.4, zorder=4)
         )  # fmt: skip
 
     def line(self, x: Sequence[float], y: Sequence[float], width: float = 0.4, colour: str = INK) -> None:

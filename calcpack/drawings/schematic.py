@@ -147,8 +147,16 @@ class _Drawing:
         svg.line(x, top, x, foot)
         for a, b in self.scale.stretched:
             svg.line(x, self.scale.y(a), x, self.scale.y(b), width=1.1, colour=BLUE)
-        title = f"Elevation / {self.unit.text} (datum: {self.project.system.site.datum})"
+        title = f"Elevation / {self.unit.text}"
+        if not self._datum_note():
+            title += f" (datum: {self.project.system.site.datum})"
         svg.text(-AXIS + 1.9, (top + foot) / 2, title, TEXT_SIZE, anchor="middle", turned=True)
+
+    def _datum_note(self) -> str:
+        """The datum as a note, when its name is too long for the axis."""
+        text = f"Elevation / {self.unit.text} (datum: {self.project.system.site.datum})"
+        length = self.scale.y(self.scale.low) - self.scale.y(self.scale.high)
+        return f"Datum of elevations: {self.project.system.site.datum}." if Words(text).width > length else ""
 
     def _names(self, frame: Box) -> list[tuple[Box, list[Words], Point]]:
         """Names of junctions and crests: (place, rows, the point they belong to)."""
@@ -165,6 +173,8 @@ class _Drawing:
         notes = ["Elevation to scale, chainage not to scale. Bends, entrances and exits are not drawn."]
         if self.scale.stretched:
             notes[0] += " The heavy part of the axis is stretched so that the levels there can be told apart."
+        if self._datum_note():
+            notes[0] += f" {self._datum_note()}"
         if self.placed.stacked:
             stacked = ", ".join(sorted(self.placed.stacked))
             leaders = ", ".join(sorted(set(self.placed.stacked.values())))

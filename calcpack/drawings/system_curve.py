@@ -6,7 +6,6 @@ All numbers are booked series and entries; see :class:`SystemCurveSpec` for what
 from __future__ import annotations
 
 from calcpack.drawings.curve_panels import Curves, draw_lower_panels, lower_panels
-from calcpack.drawings.free_space import free_rectangle
 from calcpack.drawings.geometry import Box
 from calcpack.drawings.plot_labels import HEIGHT, PITCH, Placer, end_labels, label_width, nearest_point, track_boxes
 from calcpack.drawings.plots import LINE_STYLES, Page, axis_title, set_ticks, style, symbol
@@ -37,49 +36,49 @@ _FRAME = Box(LEFT, TOP, WIDTH - RIGHT, TOP + HEAD_HEIGHT)
 
 
 def system_curve(ledger: Ledger, spec: SystemCurveSpec) -> str:
-    """SVG text of the plot, 170 mm wide. Raises LedgerError for an id that is not booked.
+    """SVG text of the plot, 170 mm wide, with the duty points as numbers under the panels.
 
-    The table of duty points stands where the head panel is empty; where it is nowhere empty enough, under the panels.
+    Raises LedgerError for an id that is not booked.
     """
     with style():
-        plot = _Plot(ledger, spec, strip=0.0)
-        if not plot.draw():
-            plot = _Plot(ledger, spec, strip=PITCH * (len(spec.cases) + 2) + 2.0)
-            plot.draw()
+        plot = _Plot(ledger, spec)
+        plot.draw()
         return plot.page.svg()
 
 
 class _Plot:
-    def __init__(self, ledger: Ledger, spec: SystemCurveSpec, strip: float) -> None:
-        self.ledger, self.spec, self.strip = ledger, spec, strip
+    def __init__(self, ledger: Ledger, spec: SystemCurveSpec) -> None:
+        self.ledger, self.spec = ledger, spec
         self.curves = Curves(ledger, spec)
         self.panels = lower_panels(spec)
         self.bottom = TOP + HEAD_HEIGHT + (PANEL_HEIGHT + PANEL_GAP) * len(self.panels)
-        self.page = Page(WIDTH, self.bottom + FOOT + KEY + strip)
+        self.rows = self._rows()
+        self.page = Page(WIDTH, self.bottom + FOOT + KEY + (PITCH * len(self.rows) + 2.0 if self.rows else 0.0))
         self.axes = self.page.axes(LEFT, TOP, WIDTH - LEFT - RIGHT, HEAD_HEIGHT)
         self.texts: list[Box] = []
         self.tracks: list[Box] = []
 
-    def draw(self) -> bool:
-        """Draw everything; False when the table of duty points found no room."""
+    def draw(self) -> None:
+        """Draw everything."""
         heads = [y for _, ys in self.curves.heads() for y in ys]
         self.axes.set_xlim(0.0, self.curves.flow_end)
         self.axes.set_ylim(_lowest(heads), max(heads) + ROOM_ABOVE * (max(heads) - _lowest(heads)))
         self._regions()
         ends = [*self._systems(), *self._pumps()]
+        self._name_flow_lines()
         inside = [end for end in ends if end[0] < _FRAME.x1 - FAR]
         ends = [end for end in ends if end not in inside]
         set_ticks(self.page, self.axes, "y", 12)
         set_ticks(self.page, self.axes, "x", 15, drop=0.0 if self.panels else 2.4)
-        self.page.text(TITLE_AT, TOP + HEAD_HEIGHT / 2, axis_title(symbol("H"), KINDS["head"].display_unit(self.system)),
-                       anchor="center", turned=True)  # fmt: skip
+        head_title = axis_title(symbol("H"), KINDS["head"].display_unit(self.system))
+        self.page.text(TITLE_AT, TOP + HEAD_HEIGHT / 2, head_title, anchor="center", turned=True)
         self.texts += end_labels(self.page, ends, WIDTH - RIGHT + 3.2, TOP + 1.5, TOP + HEAD_HEIGHT - 1.5)
         self._duty_points(inside)
         draw_lower_panels(self.page, self.curves, self.panels, TOP + HEAD_HEIGHT + PANEL_GAP, self._flow_lines)
         flow_title = axis_title(symbol("Q"), KINDS["flow"].display_unit(self.system))
         self.page.text(LEFT + (WIDTH - LEFT - RIGHT) / 2, self.bottom + 6.6, flow_title, anchor="center")
         self._key()
-        return self._table()
+        self._table()
 
     @property
     def system(self) -> str:
@@ -94,13 +93,18 @@ class _Plot:
             width = label_width(REGION_NAME)
             self.page.text(low + 1.0, TOP + 2.2, REGION_NAME)
             self.texts.append(Box(low + 1.0, TOP + 0.9, low + 1.0 + width, TOP + 3.5))
+        self._flow_lines(self.axes)
+
+    def _name_flow_lines(self) -> None:
+        """Beside each line, at its foot or its head, wherever the curves leave more room."""
         for flow, name, _ in self.curves.flow_lines():
             x, _ = self.page.place(self.axes, flow, 0)
-            y = TOP + HEAD_HEIGHT - 1.5
-            self.page.text(x - HEIGHT / 2 - 0.3, y, name, turned=True)
-            self.texts.append(Box(x - HEIGHT - 0.3, y - label_width(name), x, y))
-            self.tracks += track_boxes(((x, TOP), (x, TOP + HEAD_HEIGHT)))
-        self._flow_lines(self.axes)
+            width = label_width(name)
+            places = [Box(x - HEIGHT - 0.3, y - width, x, y) for y in (_FRAME.y1 - 1.2, _FRAME.y0 + 1.2 + width)]
+            box = min(places, key=lambda place: sum(place.overlaps(other) for other in (*self.tracks, *self.texts)))
+            self.page.text(x - HEIGHT / 2 - 0.3, box.y1, name, turned=True)
+            self.texts.append(box)
+            self.tracks += track_boxes(((x, _FRAME.y0), (x, _FRAME.y1)))
 
     def _flow_lines(self, axes) -> None:
         for flow, _, dash in self.curves.flow_lines():
@@ -181,6 +185,8 @@ class _Plot:
                 self.page.mark(x, y, shape, size, fill)
                 self.page.text(x + 2.0, y, text)
                 x += label_width(text) + 7.0
+        if self.axes.get_ylim()[0] > 0.0:
+            self.page.text(WIDTH - RIGHT, self.bottom + 6.6, "The head axis does not begin at zero.", anchor="right")
 
     def _lead(self, x: float, y: float, box: Box, off: float) -> None:
         end = nearest_point(box=box, x=x, y=y)
@@ -196,30 +202,17 @@ class _Plot:
         self.axes.plot([x], [y], shape, markersize=size, markerfacecolor=fill, markeredgecolor=INK, markeredgewidth=0.8,
                        zorder=5)  # fmt: skip
 
-    def _table(self) -> bool:
-        """Duty points as numbers, in the first empty place; under the panels when there is a strip for it."""
-        rows = self._rows()
-        if len(rows) < 2:
-            return True
-        widths = [max(label_width(row[k]) for row in rows) + 3.0 for k in range(len(rows[0]))]
-        size = (sum(widths) + 1.0, PITCH * len(rows) + 1.6)
-        box: Box | None
-        if self.strip:
-            top = self.bottom + FOOT + KEY
-            box = Box(LEFT, top, LEFT + size[0], top + size[1])
-        else:
-            inner = Box(_FRAME.x0 + 1.5, _FRAME.y0 + 1.5, _FRAME.x1 - 1.5, _FRAME.y1 - 1.5)
-            box = free_rectangle([size], [*self.texts, *self.tracks], inner, 1.0)
-        if box is None:
-            return False
-        self.page.box(box)
-        for index, row in enumerate(rows):
-            y, right = box.y0 + 0.8 + PITCH * (index + 0.5), box.x0 + 1.0
+    def _table(self) -> None:
+        """Duty points as numbers under the panels."""
+        widths = [max(map(label_width, column)) + 4.0 for column in zip(*self.rows, strict=True)]
+        top = self.bottom + FOOT + KEY
+        for index, row in enumerate(self.rows):
+            y, right = top + PITCH * (index + 0.5), LEFT
             for text, width in zip(row, widths, strict=True):
                 right += width
-                self.page.text(right - 1.5, y, text, anchor="right")
-        self.page.line((box.x0, box.x1), (box.y0 + 0.6 + PITCH,) * 2, 0.4)
-        return True
+                self.page.text(right - 2.0, y, text, anchor="right")
+        if self.rows:
+            self.page.line((LEFT, LEFT + sum(widths)), (top + PITCH,) * 2, 0.5)
 
     def _rows(self) -> list[list[str]]:
         duties = [case for case in self.spec.cases if case.flow and case.head]

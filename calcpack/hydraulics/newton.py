@@ -23,7 +23,7 @@ MOST_ITERATIONS = 200
 FLOW_TOLERANCE = 1e-10  # of the sum of flows, for the change still to come
 SPEED_TOLERANCE = 1e-9  # m/s in every line, for networks at rest; slower flows are set to zero
 NOISE_SPEED = 1e-6  # m/s below which a flow is zero if its head loss is lost in the rounding of the heads
-HEAD_NOISE = 1e-13  # of the largest head
+HEAD_NOISE = 1e-14  # of the largest head (or 1 m): what rounding leaves of a head drop
 ENERGY_TOLERANCE = 1e-11  # of the largest head (or 1 m), for the head lost in any link
 ACCEPTED_CONTINUITY = 1e-6  # of the throughput
 ACCEPTED_ENERGY = 1e-4  # m
@@ -106,6 +106,7 @@ def solve(net: Network, flow: np.ndarray | None = None) -> Result:
         changed = _review(search, balanced)
         done = balanced & ~changed
         if iteration == MOST_ITERATIONS:
+            out.unsettled[search.blocks] = changed
             done = np.ones_like(done)
         if changed.any():
             law = laws.losses(search.net, search.flow, search.state)
@@ -189,10 +190,11 @@ def _balanced(search: _Search, law: tuple[np.ndarray, np.ndarray]) -> np.ndarray
     """Which blocks (B,) are balanced as well as rounding allows."""
     net = search.net
     residual = np.abs(np.where(search.state != 0, law[0] - net.topology.drop(search.head), 0.0))
-    to_come = np.sum(residual / law[1], axis=0)
+    scale = 1.0 + np.max(np.abs(search.head), axis=0, initial=0.0)
+    to_come = np.sum(np.maximum(residual - HEAD_NOISE * scale, 0.0) / law[1], axis=0)
     small = _smallest_change(net, search.flow)
     energy = np.max(residual, axis=0, initial=0.0)
-    limit = ENERGY_TOLERANCE * (1.0 + np.max(np.abs(search.head), axis=0, initial=0.0))
+    limit = ENERGY_TOLERANCE * scale
     balanced = (to_come <= small) & (energy <= limit)
     if balanced.any():
         balanced &= _imbalance(net, search.flow, search.dead) <= small
@@ -253,6 +255,6 @@ def _store(search: _Search, law: tuple[np.ndarray, np.ndarray], done: np.ndarray
     out.flow[:, at], out.state[:, at], out.dead[:, at] = flow, state, dead
     out.head[:, at] = np.where(dead, np.nan, head)
     out.iterations[at], out.continuity[at], out.energy[at] = iteration, continuity, energy
-    out.unsettled[at] = search.rounds[columns] >= valves.MOST_ROUNDS
+    out.unsettled[at] |= search.rounds[columns] >= valves.MOST_ROUNDS
     small = (continuity <= ACCEPTED_CONTINUITY * throughput + least) & (energy <= ACCEPTED_ENERGY)
     out.converged[at] = small & ~out.unsettled[at]

@@ -21,7 +21,8 @@ def case_solutions(group: Group, result: Result, units: str) -> dict[str, CaseSo
     flow, pump_flow = result.flow[:count], result.flow[count:]
     each = pump_flow / np.maximum(net.running, 1.0)
     head = np.where(net.running > 0, net.curves.evaluate(each)[0], 0.0)
-    is_open = (result.state[:count] != 0) | result.dead[topology.start[:count]]
+    dead = result.dead[topology.start[:count]] | result.dead[topology.end[:count]]
+    is_open = (result.state[:count] != 0) | dead
     columns = [part.T for part in (*_losses(group, flow), is_open, result.state[:count])]
     findings = find(group, result, units)
     made = {}

@@ -102,7 +102,7 @@ def _solve(net: Network, first: CaseSolution, correlation: str) -> SecondSolutio
         first.pumps[tag].running > 0 and first.pumps[tag].flow > 0 for tag in topology.pumps
     ]
     dead = np.isnan([first.heads[tag] for tag in topology.nodes])
-    is_open = np.array(carries, dtype=bool) & ~dead[topology.start]
+    is_open = np.array(carries, dtype=bool) & ~dead[topology.start] & ~dead[topology.end]
     base, loops, chords = _spanning_tree(net, is_open)
     if len(chords) > MOST_LOOPS:
         return _answer(net, first.case, TOO_LARGE, correlation, nothing, np.nan)

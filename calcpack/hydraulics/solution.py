@@ -17,8 +17,9 @@ class Finding:
 
 @dataclass(frozen=True)
 class LineFlow:
-    """One line: flow from its start to its end (negative = against the drawing) and head losses in flow direction
-    (signed like the flow). ``open`` is False where a check valve is shut."""
+    """One line: flow from its start to its end (negative = against the drawing), velocity and head losses signed like
+    the flow. At rest the friction factor is NaN unless it was given. ``open`` is False where a check valve, a fixed
+    loss or an outlet that is too high keeps the line shut."""
 
     flow: float
     velocity: float
@@ -32,7 +33,10 @@ class LineFlow:
 
 @dataclass(frozen=True)
 class PumpDuty:
-    """One pump item (all running units together): flow per running unit, total flow, head."""
+    """One pump item (all running units together): flow per running unit, total flow, head (0 when none runs).
+
+    A finding 'past-end-of-curve' or 'below-start-of-curve' on the pump's tag means that the head is extrapolated and
+    this is no duty."""
 
     flow_each: float
     flow: float
@@ -52,7 +56,8 @@ class Convergence:
 
 @dataclass(frozen=True)
 class CaseSolution:
-    """One case. ``heads`` are total energy heads above datum (gauge), m, by node tag."""
+    """One case. ``heads`` are total energy heads above datum (gauge), m, by node tag; NaN where no open path joins the
+    node to a tank or outlet (its lines carry nothing). All flows and heads are NaN where a line has no resistance."""
 
     case: str
     heads: Mapping[str, float]

@@ -9,11 +9,12 @@
 from __future__ import annotations
 
 from pathlib import Path
+from typing import Any
 
 from calcpack.errors import ProjectError
 from calcpack.project.model import Project
 
-__all__ = ["load"]
+__all__ = ["json_schema", "load"]
 
 
 def load(folder: Path | str) -> Project:
@@ -34,3 +35,10 @@ def load(folder: Path | str) -> Project:
     if project is None:
         raise ProjectError(problems)
     return project
+
+
+def json_schema() -> dict[str, Any]:
+    """JSON Schema (2020-12) of the input files: a definition for each file and for every block in them."""
+    from calcpack.project.schema.export import json_schema as export
+
+    return export()

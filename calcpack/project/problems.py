@@ -20,15 +20,11 @@ _ELEMENTS = {
 
 
 class Problems(list[Problem]):
-    """A growing list of problems. ``case`` names the operating case whose overrides are being read, if any."""
+    """A growing list of problems."""
 
-    def __init__(self) -> None:
-        super().__init__()
-        self.case = ""
-
-    def add(self, raw: Raw, text: str, hint: str = "", *, key: str = "") -> None:
-        """Report something wrong at a piece of input; ``key`` names a part of it that may not be there."""
-        self.add_at(f"{raw.path}.{key}" if key else raw.path, raw.file, raw.line, text, hint)
+    def add(self, raw: Raw, text: str, hint: str = "") -> None:
+        """Report something wrong at a piece of input."""
+        self.add_at(raw.path, raw.file, raw.line, text, hint)
 
     def add_at(self, path: str, file: str, line: int, text: str, hint: str = "") -> None:
         """Report something wrong with the input of that path, standing in that line."""

@@ -1,0 +1,1 @@
+"""The report: sheets and ledger -> HTML -> PDF. Places what was computed before; computes nothing itself."""

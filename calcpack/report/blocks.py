@@ -59,7 +59,7 @@ def derivation(desk: Desk, block: Derivation, key: tuple[str, int]) -> Derivatio
 def table(desk: Desk, block: Table, key: tuple[str, int]) -> TableView:
     """A table. Raises RenderError for a row that has more or fewer cells than the table has columns."""
     columns = tuple(
-        _column(desk, column, width)
+        _column(desk, column, width, desk.numbering.labels[key])
         for column, width in zip(block.columns, _widths([column.width for column in block.columns]), strict=True)
     )
     rows = []
@@ -71,7 +71,8 @@ def table(desk: Desk, block: Table, key: tuple[str, int]) -> TableView:
         anchor = desk.numbering.anchors.get((*key, item), "")
         rows.append(_row(desk, block.columns, row, anchor))
     return TableView(
-        desk.numbering.labels[key], _whole(rows), desk.sentence(block.caption), columns, tuple(rows), desk.sentence(block.note)
+        desk.numbering.labels[key], _whole(rows), desk.sentence(block.caption), columns, tuple(rows),
+        desk.sentence(block.note),
     )
 
 
@@ -112,15 +113,14 @@ def _spoken(desk: Desk, entry: Entry) -> str:
     return f"{equation}{symbol_text(entry.symbol)} = {result}" if entry.symbol else result
 
 
-def _column(desk: Desk, column: Column, width: str) -> ColumnView:
+def _column(desk: Desk, column: Column, width: str, label: str) -> ColumnView:
     quantity = ""
     if column.symbol or column.kind:
         unit = unit_in_head(column, desk.ledger.system) if column.kind else ""
-        quantity = symbol_html(column.symbol) + number_html(unit if column.symbol else unit.lstrip(" ,/"))
-    equation = ""
-    if column.derived:
-        home = desk.numbering.homes.get(column.derived)
-        equation = linked(escape(home.label), desk.link(column.derived)) if home else ""
+        quantity = symbol_html(column.symbol) + number_html(unit if column.symbol else unit.lstrip("\u00a0 ,/"))
+    equation, home = "", desk.numbering.homes.get(column.derived)
+    if home and home.label != label:  # a column does not refer to its own table
+        equation = linked(escape(home.label), desk.link(column.derived))
     return ColumnView(
         number_html(column.title), Html(quantity), Html(equation), "num" if column.kind else "txt", width
     )

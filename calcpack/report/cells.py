@@ -8,7 +8,7 @@ from html import escape
 
 from calcpack.errors import RenderError
 from calcpack.ledger import Citation, Entry, Ledger
-from calcpack.ledger.text import number_text, quantity_text, unit_of
+from calcpack.ledger.text import NBSP, number_text, quantity_text, unit_of
 from calcpack.quantities import KINDS
 from calcpack.report.anchors import source_anchor
 from calcpack.report.claims import PLACEHOLDER, parts
@@ -105,7 +105,8 @@ def unit_in_head(column: Column, system: str) -> str:
         return ""
     if system == "US":
         return f", {unit}{word}"
-    return f" / ({unit}){word}" if "/" in unit or "·" in unit else f" / {unit}{word}"
+    shown = f"({unit})" if "/" in unit or "·" in unit else unit
+    return f"{NBSP}/{NBSP}{shown}{word}"
 
 
 def _number(desk: Desk, entry: Entry) -> Html:

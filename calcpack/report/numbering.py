@@ -54,12 +54,12 @@ class Numbering:
 
     def used_in(self, entry_id: str) -> list[tuple[str, str]]:
         """(label, address) of every place that uses the entry, drawn together where there are many."""
-        homes = [self.homes[user] for user in self.users.get(entry_id, ()) if user in self.homes]
-        places = {home.label: f"#{home.anchor}" for home in reversed(homes)}
+        homes = [self.homes[user] for user in reversed(self.users.get(entry_id, ())) if user in self.homes]
+        places = {home.label: f"#{home.anchor}" for home in homes}
         if len(places) > FEW:
-            places = {self.sections[home.section]: f"#{section_anchor(home.section)}" for home in reversed(homes)}
+            places = {self.sections[home.section]: f"#{section_anchor(home.section)}" for home in homes}
         if len(places) > FEW:
-            places = {f"sheet\u00a0{self.sheets[home.sheet]}": f"#{sheet_anchor(home.sheet)}" for home in reversed(homes)}
+            places = {f"sheet\u00a0{self.sheets[home.sheet]}": f"#{sheet_anchor(home.sheet)}" for home in homes}
         return sorted(places.items(), key=lambda place: _in_order(place[0]))
 
     def homeless(self, ledger: Ledger) -> list[str]:

@@ -63,14 +63,15 @@ def render_html(package: PackageContent, ledger: Ledger, figures: dict[str, str]
             pieces.append((f"sheet {desk.numbering.sheets[sheet.key]} {sheet.title}", render_sheet(sheet, desk)))
     document = package.document
     head = title_block(package)
-    pieces.append(("the head and foot of every sheet", escape(" ".join((*astuple(head), package.program, package.fingerprint)))))
-    _require_glyphs([*pieces, *((f"drawing {key}", svg) for key, svg in figures.items())])
+    margins = escape(" ".join((*astuple(head), package.program, package.fingerprint)))
+    drawings = [(f"drawing {key}", svg) for key, svg in figures.items()]
+    _require_glyphs([*pieces, ("the head and foot of every sheet", margins), *drawings])
     return _fill(
         views.PackageView(
             language=document.language, title=f"{document.number} {document.title}", date=document.date,
             keywords=", ".join(filter(None, (document.project, document.type, document.number, document.status))),
             program=package.program, style=style_sheet(package), head=head,
-            pieces=tuple(Html(html) for _, html in pieces[:-1]),
+            pieces=tuple(Html(html) for _, html in pieces),
         ),
     )
 

@@ -53,9 +53,9 @@ CALCULATION = (
     verification,  # runs the hand-check: nothing after it applies a formula
     schematic,
     cases,
-    cautions,
     basis,
     schedules,
+    cautions,  # counts the assumptions: after it only the registers book inputs
     registers,
     verdict,
     references,

@@ -53,6 +53,10 @@ FINDINGS: dict[str, tuple[str, str]] = {
     "not-converged": ("No solution", "The result must not be used."),
 }
 
+# Findings after which a result is none: the verdict cannot stand on the criteria alone.
+VOID = ("no-flow", "no-flow-static-above-shutoff", "not-converged", "no-resistance", "disconnected", "unmet-demand",
+        "past-end-of-curve", "below-start-of-curve", "below-vapour-pressure", "inflow-at-outlet")
+
 # Flag of the liquid -> hazard, fact ({flag}, {liquid}, {temperature} are put in), who decides.
 FLAGS: dict[str, tuple[str, str, str]] = {
     "potable": (

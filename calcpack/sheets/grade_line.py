@@ -54,6 +54,20 @@ def _section(job: Job, pump: Pump, cases: list[Case]) -> Section:
     lowest = job.ledger[check.operands["value"]]
     point = lowest.id.rpartition("/m@")[0]
     derived = [f"{point}/{symbol}@{lowest.case}" for symbol in ("H", "z_h", "m")]
+    blocks: tuple[Block, ...] = (
+        Figure(f"grade-{tag}", f"{tag}: grade lines along the path, case {case_label(shown)}",
+               f"Profile of the pipe axis with hydraulic and energy grade lines; the grade is nearest to the axis at "
+               f"{{{point}/x}} along {point.partition('/')[0]}, where it stands {{{lowest.id}}} above it."),
+        *(_table(job, tag, case, points[case.id], lowest.id) for case in cases),
+        Prose("Losses of fittings are spread over the length of their line; the exit loss falls at its end.", "note"),
+        Prose(f"Lowest margin, derived in full, case {case_label(job.project.case(lowest.case))}:"),
+        Derivation(tuple(derived), governing=(lowest.id,)),
+        Verdicts((check.id,)),
+    )
+    return Section(f"grade-{tag}", f"{tag}: grade along the path", blocks)
+
+
+def _table(job: Job, tag: str, case: Case, points: list[str], lowest: str) -> Table:
     columns = (
         Column("Line", width=1.4),
         *(Column(title, symbol, kind) for title, symbol, kind in (
@@ -61,22 +75,12 @@ def _section(job: Job, pump: Pump, cases: list[Case]) -> Section:
             ("Hydraulic grade", "z_h", "elevation"), ("Grade above axis", "m", "head"))),
     )
     rows = tuple(
-        Row((one.partition("/")[0], Ref(f"{one}/x"), Ref(f"{one}/z"),
-             *(_cell(job, f"{one}/{symbol}@{shown.id}") for symbol in ("H", "z_h", "m"))),
-            mark="lowest" if one == point and lowest.case == shown.id else "")
-        for one in points[shown.id]
+        Row((point.partition("/")[0], Ref(f"{point}/x"), Ref(f"{point}/z"),
+             *(_cell(job, f"{point}/{symbol}@{case.id}") for symbol in ("H", "z_h", "m"))),
+            mark="lowest" if f"{point}/m@{case.id}" == lowest else "")
+        for point in points
     )
-    blocks: tuple[Block, ...] = (
-        Figure(f"grade-{tag}", f"{tag}: grade lines along the path, case {case_label(shown)}",
-               f"Profile of the pipe axis with hydraulic and energy grade lines; the grade is nearest to the axis at "
-               f"{{{point}/x}} along {point.partition('/')[0]}, where it stands {{{lowest.id}}} above it."),
-        Table(f"{tag}: grade along the discharge, case {case_label(shown)}", columns, rows,
-              note="Losses of fittings are spread over the length of their line; the exit loss falls at its end."),
-        Prose(f"Lowest margin, derived in full, case {case_label(job.project.case(lowest.case))}:"),
-        Derivation(tuple(derived), governing=(lowest.id,)),
-        Verdicts((check.id,)),
-    )
-    return Section(f"grade-{tag}", f"{tag}: grade along the path", blocks)
+    return Table(f"{tag}: grade along the discharge, case {case_label(case)}", columns, rows)
 
 
 def _cell(job: Job, entry_id: str) -> Ref | str:

@@ -70,7 +70,7 @@ def _candidates(job: Job, case: Case, line: Line, flow: Entry) -> list[Block]:
     if smallest != chosen.nominal:
         reason = ("no size shown keeps the velocity inside its limits" if smallest is None else
                   f"stated by the project; the smallest size inside the velocity limits would be {smallest}")
-    job.ledger.chosen(f"{line.tag}/size", chosen.nominal, f"{line.tag}: size", reason=reason, source="PROJECT",
+    job.ledger.chosen(f"{line.tag}/size", chosen.nominal, f"{line.tag}: size", reason=reason, source="TOOL",
                       operands={"Q": flow.id})
     key = f"{line.tag}/size/{chosen.nominal}"
     columns = (

@@ -56,16 +56,21 @@ def _standing(one: Source) -> str:
 
 
 def _formulas(job: Job) -> Table:
-    columns = (Column("Formula", width=3.4), Column("Title", width=2.8), Column("Source", width=2.8),
-               Column("Range of validity", width=2.2), Column("Used", "", "count", width=0.7))
+    columns = (Column("Formula", width=3.3), Column("Title", width=2.6), Column("Source", width=2.6),
+               Column("Range of validity", width=2.0), Column("Used", "", "count", width=0.7),
+               Column("First use", width=0.9))
     used = Counter(entry.formula for entry in job.ledger if entry.formula)
+    first: dict[str, str] = {}
+    for entry in job.ledger:
+        first.setdefault(entry.formula, entry.id)
     rows = []
     for formula_id, number in used.items():
         formula = FORMULAS[formula_id]
         times = count(job, f"count/{formula_id}", number, f"{formula.title}: times used")
         place = ", ".join(part for part in (formula.source, formula.locator) if part)
         ranges = "; ".join(range_words(formula, limits, job.ledger.system) for limits in formula.valid)
-        rows.append(Row((formula_id, formula.title, place, ranges or "no limit declared", Ref(times.id))))
+        rows.append(Row((formula_id, formula.title, place, ranges or "no limit declared", Ref(times.id),
+                         Ref(first[formula_id], "where"))))
     return Table("Formulas used and how often", columns, tuple(rows))
 
 

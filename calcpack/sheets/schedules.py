@@ -29,8 +29,8 @@ def _ref(job: Job, entry_id: str) -> Cell:
 
 def _lines(job: Job) -> Table:
     columns = (
-        Column("Line", width=0.9), Column("From", width=1.7), Column("To", width=1.6), Column("Service", width=1.3),
-        Column("Size", width=1.9), Column("Material", width=1.3), Column("Bore", "D", "diameter", width=0.9),
+        Column("Line", width=0.9), Column("From", width=1.7), Column("To", width=1.5), Column("Service", width=1.3),
+        Column("Size", width=1.9), Column("Material", width=1.5), Column("Bore", "D", "diameter", width=0.9),
         Column("Length", "L", "length", width=0.9), Column("Roughness by state", width=1.7),
         Column("Rating", "p_rat", "gauge_pressure", width=1.7),
     )

@@ -5,6 +5,7 @@ from __future__ import annotations
 from calcpack.ledger import Entry
 from calcpack.ledger.entry import CHECK, MET, MET_WITH_WARNING, NOT_CHECKED, NOT_MET, OUT_OF_RANGE, REFER
 from calcpack.project.model import Pump
+from calcpack.sheets.caution_words import VOID
 from calcpack.sheets.content import Block, Column, Prose, Ref, Row, Section, Sheet, Table, Verdicts
 from calcpack.sheets.job import Job, case_label, greatest, least
 from calcpack.sheets.registers import count, open_counts, plain
@@ -72,14 +73,23 @@ def verdict_counts(job: Job) -> dict[str, Entry]:
 
 
 def _answer(job: Job) -> Prose:
+    """How many criteria ended how, and whether that is an answer at all."""
     counts = verdict_counts(job)
     if not counts:
         return Prose("No criterion was booked: nothing is judged in this package.", "caution")
     total = count(job, "count/criteria", len(job.ledger.of_origin(CHECK)), "Number of criteria")
     parts = "; ".join(f"{verdict}: {{{entry.id}}}" for verdict, entry in counts.items())
-    complete = not any(verdict in counts for verdict in INCOMPLETE)
-    end = "Every criterion is decided." if complete else "The work is not complete until the first groups are settled."
-    return Prose(f"Criteria: {{{total.id}}}, of which {parts}. {end}", "" if complete else "caution")
+    text, undecided = f"Criteria: {{{total.id}}}, of which {parts}.", any(one in counts for one in INCOMPLETE)
+    if undecided:
+        text += " The work is not complete until the first groups are settled."
+    void = [finding for case in job.cases for finding in job.solved(case).findings if finding.code in VOID]
+    if void:
+        number = count(job, "count/void", len(void), "Number of findings that leave a case without a valid result")
+        text += (f" Cases have no valid result by {{{number.id}}} findings of the solution, told among the cautions; "
+                 "criteria of such a case are not judged and the work is not complete.")
+    if not undecided and not void:
+        text += " Every criterion is decided."
+    return Prose(text, "caution" if undecided or void else "")
 
 
 def _results(job: Job) -> tuple[Block, ...]:

@@ -10,10 +10,11 @@ from calcpack.project.model import Fitting, Line, ProfilePoint
 from calcpack.project.resolve.draft import Draft, Keys
 from calcpack.project.resolve.pipes import resolve_pipe, resolve_roughness, resolve_surge
 from calcpack.project.schema.base import BROKEN, intact
-from calcpack.project.schema.system import FittingInput, LineInput
+from calcpack.project.schema.system import FittingInput, JunctionInput, LineInput, OutletInput
 from calcpack.values import SUPPLIED, Value
 
 LENGTH_SLACK = 1e-6  # of the length: a profile that ends where its line does
+ELEVATION_SLACK = 0.1  # m: the profile and the node at its end mean the same point
 
 
 def resolve_line(draft: Draft, tag: str, line: LineInput) -> Line:
@@ -120,3 +121,20 @@ def _check_profile(draft: Draft, keys: Keys, line: LineInput) -> None:
     if points[-1].chainage.si > line.length.si * (1 + LENGTH_SLACK):
         text = f"the profile goes to {points[-1].chainage.text}, the line is {line.length.text} long"
         draft.wrong((*where, len(points) - 1, "chainage"), text, "correct the length or the profile")
+    _check_profile_ends(draft, where, line)
+
+
+def _check_profile_ends(draft: Draft, where: Keys, line: LineInput) -> None:
+    """A profile meets the outlets and junctions at its ends: one elevation is not stated in two ways."""
+    if line.start == line.end:  # reported as such
+        return
+    nodes = draft.inputs.system.nodes
+    last = len(line.profile) - 1
+    for at, name, chainage in ((0, line.start, 0.0), (last, line.end, line.length.si)):
+        point, node = line.profile[at], nodes.get(name) if nodes is not BROKEN and name is not BROKEN else None
+        if not isinstance(node, OutletInput | JunctionInput) or not intact(point.elevation, node.elevation):
+            continue
+        reaches_end = abs(point.chainage.si - chainage) <= LENGTH_SLACK * line.length.si
+        if reaches_end and abs(point.elevation.si - node.elevation.si) > ELEVATION_SLACK:
+            text = f"the profile has {point.elevation.text} where {name} lies at {node.elevation.text}"
+            draft.wrong((*where, at, "elevation"), text, "one of the two is wrong")

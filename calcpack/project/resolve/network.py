@@ -81,9 +81,18 @@ def _check_tags(draft: Draft) -> None:
         ("a pump", ("pumps",), draft.inputs.pumps),
     ):
         for tag in items if items is not BROKEN else ():
-            if tag in owners:
-                draft.wrong((*home, tag), f"the tag {tag} also names {owners[tag]}", "give every part a tag of its own")
-            owners.setdefault(tag, label)
+            _own(draft, owners, tag, label, (*home, tag))
+    for line_tag, line in system.lines.items() if system.lines is not BROKEN else ():
+        for at, fitting in enumerate((line and line.fittings) or ()):
+            if fitting and fitting.tag:
+                keys = ("system", "lines", line_tag, "fittings", at)
+                _own(draft, owners, fitting.tag, f"a fitting of line {line_tag}", keys)
+
+
+def _own(draft: Draft, owners: dict[str, str], tag: str, label: str, keys: Keys) -> None:
+    if tag in owners:
+        draft.wrong(keys, f"the tag {tag} also names {owners[tag]}", "give every part a tag of its own")
+    owners.setdefault(tag, label)
 
 
 def _check_ends(draft: Draft, tag: str) -> None:

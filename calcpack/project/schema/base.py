@@ -85,7 +85,7 @@ Tolerant = WrapValidator(tolerant)
 class Input(BaseModel):
     """A block of keys. Unknown and missing keys are reported; so is every value that does not fit."""
 
-    model_config = ConfigDict(frozen=True, extra="forbid", str_strip_whitespace=True, arbitrary_types_allowed=True)
+    model_config = ConfigDict(frozen=True, extra="forbid", str_strip_whitespace=True)
 
     @model_validator(mode="wrap")
     @classmethod

@@ -15,7 +15,8 @@ STATUSES = ("draft", "preliminary", "for review", "for construction", "as built"
 
 Flow = Annotated[Value, Quantity("flow", above=0.0)]
 Fraction = Annotated[Value, Quantity("fraction", least=0.0, most=1.0)]
-Ratio = Annotated[Value, Quantity("ratio", least=0.0)]
+Band = Annotated[Value, Quantity("fraction", least=0.0)]
+Temperature = Annotated[Value, Quantity("temperature", above=0.0)]
 
 
 class DocumentInput(Input):
@@ -70,10 +71,21 @@ class EconomyInput(Sourced):
 
 
 class LimitsInput(Sourced):
-    """Limits of criteria that replace the usual ones of the program."""
+    """Limits and warning bands of criteria that replace the usual ones of the program."""
 
-    npsh_warning_band: Ratio | None = Field(
-        None, description="NPSH margin above the requirement under which a warning stands"
+    capacity_band: Band | None = Field(None, description="flow above the required flow under which a warning stands")
+    oversupply: Band | None = Field(None, description="greatest flow at the design case, in % of the design flow")
+    oversupply_band: Band | None = Field(None, description="flow below that limit from which a warning stands")
+    curve_end_band: Band | None = Field(None, description="flow below the end of the curve from which a warning stands")
+    minimum_flow_band: Band | None = Field(None, description="flow above the minimum under which a warning stands")
+    npsh_warning_band: Band | None = Field(
+        None, description="NPSH margin over the required one under which a warning stands"
+    )
+    pressure_band: Band | None = Field(None, description="pressure below the rating from which a warning stands")
+    velocity_band: Band | None = Field(None, description="velocity inside its limits from which a warning stands")
+    hot_liquid: Temperature | None = Field(None, description="temperature above which contact is cautioned against")
+    cold_liquid: Temperature | None = Field(
+        None, description="temperature at or below which frost is cautioned against"
     )
 
 
