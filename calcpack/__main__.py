@@ -86,10 +86,10 @@ def _draft(options: argparse.Namespace) -> int:
 
     outcome = build.draft(options.folder, _progress())
     if options.json:
-        print(json.dumps({"pdf": str(outcome.pdf), "results": str(outcome.results), "sheets": outcome.sheets,
+        print(json.dumps({"pdf": str(outcome.pdf), "results": str(outcome.results), "sheets": outcome.pages,
                           "verdicts": outcome.verdicts, "fingerprint": outcome.fingerprint}))
     else:
-        print(f"{outcome.pdf}  ({outcome.sheets} sheets)")
+        print(f"{outcome.pdf}  ({outcome.pages} sheets)")
         print(outcome.results)
         print(", ".join(f"{word}: {count}" for word, count in outcome.verdicts.items()))
     return NOT_MET if outcome.not_met else DONE

@@ -88,12 +88,12 @@ def crude_oil_line(case, folder):
 
 @system("PS-10")
 def nitric_acid(case, folder):
-    """New and corroded pipe; hydraulic power. The acid leaves into a tank without loss, as in the source."""
+    """New and corroded pipe; hydraulic power, with the velocity head of the acid at the end."""
     flow = case["mass_flow"] / case["density"]
     power = {}
     for age in ("new", "old"):
         factor = STRESS * case[f"stanton_pannell_phi_{age}"]
-        main = line(DISCHARGE, "T-2", stated(case, "diameter"), stated(case, "length"), factor=factor, k={"exit": 0})
+        main = line(DISCHARGE, "T-2", stated(case, "diameter"), stated(case, "length"), factor=factor, k={"exit": 1})
         sketch = lift(case, main, rise=stated(case, "lift"), flow=f"{flow:.15g} m3/s",
                       liquid=liquid(stated(case, "density"), stated(case, "viscosity")))  # fmt: skip
         power[age] = sketch.with_chosen_pump(folder / age, flow).at(f"{PUMP}/P_h")
@@ -101,7 +101,7 @@ def nitric_acid(case, folder):
 
 
 def _exchanger_line(case: PublishedCase, length: str, density: str, folder: Path) -> Computed:
-    main = line(DISCHARGE, "T-2", stated(case, "diameter"), length, factor=STRESS * case["phi"], k={"exit": 0},
+    main = line(DISCHARGE, "T-2", stated(case, "diameter"), length, factor=STRESS * case["phi"], k={"exit": 1},
                 equipment=["E-1"])  # fmt: skip
     sketch = lift(case, main, rise=stated(case, "lift"), equipment={"E-1": loss(stated(case, "exchanger_loss"))},
                   liquid=liquid(density), flow=stated(case, "flow"))  # fmt: skip

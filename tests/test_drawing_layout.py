@@ -12,11 +12,13 @@ from hypothesis import given
 from hypothesis import strategies as st
 from svg_texts import SVG, root_of, texts_of
 
+from calcpack.drawings.blocks import LEFT, RIGHT
 from calcpack.drawings.elevation_scale import SMALLEST_GAP, elevation_scale
 from calcpack.drawings.geometry import Box, nearest_slot, segment_box
 from calcpack.drawings.items import Items
 from calcpack.drawings.layout import graph_of, place
 from calcpack.drawings.plot_labels import spread
+from calcpack.drawings.routes import Router, stub_end
 from calcpack.drawings.schematic import schematic
 from calcpack.drawings.ticks import round_ticks, tick_texts
 from calcpack.drawings.wiring import wire
@@ -54,7 +56,8 @@ def test_lines_run_square_and_around_every_block(make):
                 assert x0 == x1 or y0 == y1, line
                 for block in blocks_of(placed):
                     if block.tag != line and block.tag not in own_ends(make, line):
-                        assert not segment_box((x0, y0), (x1, y1), 0.0).overlaps(block.box.grown(-0.1)), (line, block.tag)
+                        strip = segment_box((x0, y0), (x1, y1), 0.0)
+                        assert not strip.overlaps(block.box.grown(-0.1)), (line, block.tag)
 
 
 def own_ends(make, line: str) -> tuple[str, ...]:
@@ -124,6 +127,29 @@ def test_no_text_stands_on_a_line(make):
             for a, b in pairwise(points):
                 struck = [text.text for text in texts if text.box.overlaps(segment_box(a, b, 0.2))]
                 assert struck == [], (group.get("data-tag"), struck)
+
+
+def test_routes_go_around_what_stands_in_the_way():
+    wall = Box(20.0, -15.0, 30.0, 15.0)
+    start, goal = ((0.0, 0.0), (RIGHT,)), ((50.0, 0.0), (LEFT,))
+    router = Router(Box(-10, -30, 60, 30), {"wall": wall}, [*stub_end(start), *stub_end(goal)])
+    (path,) = router.route_all([("A", start, goal)])
+    assert path[0] == (0.0, 0.0) and path[-1] == (50.0, 0.0)
+    assert not any(segment_box(a, b, 0.0).overlaps(wall) for a, b in pairwise(path))
+    assert len(path) == 6  # four bends, no more
+
+
+def test_routes_of_one_node_share_a_header_and_others_keep_off_it():
+    ports = [((0.0, 0.0), (RIGHT,)), ((0.0, 12.0), (RIGHT,)), ((40.0, 20.0), (LEFT,)), ((40.0, 26.0), (LEFT,)),
+             ((40.0, -8.0), (LEFT,))]  # fmt: skip
+    router = Router(Box(-10, -30, 60, 40), {}, [point for port in ports for point in stub_end(port)])
+    one, two, other = router.route_all(
+        [("A", ports[0], ports[2]), ("A", ports[0], ports[3]), ("B", ports[1], ports[4])]
+    )
+    assert one[1] == two[1]  # they turn off together
+    risers = {x for path in (one, two) for (x, _), (b, _) in pairwise(path) if x == b}
+    assert len(risers) == 1
+    assert all(abs(x - b) > 1.0 for x in risers for (b, _), (c, _) in pairwise(other) if b == c)
 
 
 def test_hints_move_a_node():

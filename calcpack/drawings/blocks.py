@@ -178,7 +178,7 @@ class LineBlock(Block):
         self.left = self.right = half
         shapes = [INLINE[key] for key, _ in self.symbols]
         self._head = max([1.0, *(shape.above for shape in shapes)]) + 0.5
-        self._foot = max([1.0, *(shape.below for shape in shapes)]) + 0.4
+        self._foot = max([1.0, *(shape.below for shape in shapes)]) + 0.7
         self.tag_row = self._foot
         if any(tag for _, tag in self.symbols):
             self._foot += ROW

@@ -22,9 +22,10 @@ from calcpack.drawings.symbols import INLINE, arrow_head
 from calcpack.drawings.tank_block import TankBlock, level_mark
 from calcpack.drawings.words import ROW, Words
 
-_HEIGHT = 7.0  # mm, height of one legend row
+_HEIGHT = 6.8  # mm, height of one legend row
 _SHAPE = 8.6  # mm for the symbol
 _PAD = 1.2
+_GAP = 0.9  # mm between heading and symbols, for actuators
 _HEADING = Words("Symbols used (shapes in the manner of ISO 10628-2)")
 
 
@@ -71,7 +72,7 @@ def legend_entries(blocks: Iterable[Block], tees: Sequence[Point]) -> list[Legen
 def legend_size(entries: Sequence[LegendEntry], columns: int) -> tuple[float, float]:
     """Width and height that :func:`draw_legend` takes with so many columns."""
     widths = _widths(entries, columns)
-    return max(sum(widths), _HEADING.width) + 2 * _PAD, ROW + _HEIGHT * _rows(entries, columns) + 2 * _PAD
+    return max(sum(widths), _HEADING.width) + 2 * _PAD, ROW + _GAP + _HEIGHT * _rows(entries, columns) + 2 * _PAD
 
 
 def draw_legend(svg: Svg, entries: Sequence[LegendEntry], box: Box) -> None:
@@ -83,7 +84,7 @@ def draw_legend(svg: Svg, entries: Sequence[LegendEntry], box: Box) -> None:
         _HEADING.set(svg, box.x0 + _PAD, box.y0 + _PAD + ROW / 2)
         for index, entry in enumerate(entries):
             x = box.x0 + _PAD + sum(widths[: index // rows])
-            y = box.y0 + _PAD + ROW + _HEIGHT * (index % rows + 0.5)
+            y = box.y0 + _PAD + ROW + _GAP + _HEIGHT * (index % rows + 0.5)
             entry.draw(svg, x + _SHAPE / 2, y)
             Words(entry.title).set(svg, x + _SHAPE + 1.2, y)
 

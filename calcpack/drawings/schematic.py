@@ -6,9 +6,10 @@ every number that is written.
 
 from __future__ import annotations
 
+import math
 from itertools import pairwise
 
-from calcpack.drawings.blocks import BRANCH_RADIUS, Block, JunctionBlock
+from calcpack.drawings.blocks import BRANCH_RADIUS, NODE_RADIUS, Block, JunctionBlock
 from calcpack.drawings.elevation_scale import ElevationScale
 from calcpack.drawings.free_space import free_rectangle, leader_end, name_place
 from calcpack.drawings.geometry import Box, around, segment_box
@@ -26,10 +27,10 @@ from calcpack.quantities import KINDS
 
 WIDTH = 170.0  # mm, between the margins of an A4 sheet
 AXIS = 15.0  # mm for the elevation axis
-HEIGHTS = (62.0, 70.0, 76.0, 82.0, 90.0, 100.0, 112.0)  # mm of elevation axis to choose from
+HEIGHTS = (62.0, 70.0, 76.0, 82.0, 90.0, 96.0, 102.0, 108.0, 114.0, 120.0)  # mm of elevation axis to choose from
 MARGIN = 1.0
 TICK_PITCH = 6.5  # mm, ticks of the axis are at least so far apart
-LEADER_FROM = 3.5  # mm, a name farther than this from its node gets a leader
+LEADER_FROM = 2.8  # mm, a name farther than this from its node gets a leader
 LEGEND_COLUMNS = (4, 3, 2, 5, 1)  # inside the drawing, in order of liking
 
 
@@ -130,8 +131,10 @@ class _Drawing:
                 block.draw(svg)
         for box, rows, (x, y) in names:
             end = leader_end(x, y, box)
-            if abs(end[0] - x) + abs(end[1] - y) > LEADER_FROM:
-                svg.line(x, y, *end, width=HAIR)
+            length = math.dist((x, y), end)
+            if length > LEADER_FROM:
+                share = NODE_RADIUS / length
+                svg.line(x + share * (end[0] - x), y + share * (end[1] - y), *end, width=HAIR)
             set_rows(svg, rows, box.x0, box.y0)
 
     def _axis(self, svg: Svg, frame: Box) -> None:

@@ -68,12 +68,13 @@ class Desk:
         return PLACEHOLDER.sub(lambda match: self._plain(self.ledger[match[1]]), text)
 
     def citation(self, citation: Citation) -> Html:
-        """``[key, place]`` linked to the list of references, or the document that the user named."""
+        """``[R4, place]`` linked to the list of references, or the document that the user named."""
         if not citation.key:
             return number_html(citation.text)
-        address = f"#{source_anchor(citation.key)}" if citation.key in self.numbering.sources else ""
+        number = self.numbering.sources.get(citation.key)
+        address = f"#{source_anchor(citation.key)}" if number else ""
         locator = f", {number_html(citation.locator)}" if citation.locator else ""
-        return Html(f"[{linked(escape(citation.key), address)}{locator}]")
+        return Html(f"[{linked(escape(number or citation.key), address)}{locator}]")
 
     def places(self, entry_id: str) -> Html:
         """Linked list of the places that use an entry."""

@@ -35,8 +35,8 @@ class Numbering:
 
     ``sheets`` and ``sections`` map keys and ids to numbers; ``labels`` maps (section id, block position) to the label
     of a table or figure; ``homes`` maps entry ids to their homes; ``anchors`` maps (section id, block position, item
-    position) to the link target that stands on that line or row; ``sources`` are the keys that the list of references
-    has a row for.
+    position) to the link target that stands on that line or row; ``sources`` maps each key that the list of references
+    has a row for to how it is cited there (R4).
     """
 
     sheets: dict[str, str] = field(default_factory=dict)
@@ -44,7 +44,7 @@ class Numbering:
     labels: dict[tuple[str, int], str] = field(default_factory=dict)
     homes: dict[str, Home] = field(default_factory=dict)
     anchors: dict[tuple[str, int, int], str] = field(default_factory=dict)
-    sources: set[str] = field(default_factory=set)
+    sources: dict[str, str] = field(default_factory=dict)
     users: dict[str, list[str]] = field(default_factory=dict)
 
     def address(self, entry_id: str) -> str:
@@ -102,12 +102,12 @@ def number(sheets: Sequence[Sheet], ledger: Ledger) -> Numbering:
 
 
 def _references(numbering: Numbering, section: Section) -> None:
-    """Link targets of the sources: rows whose first cell is the key."""
+    """Link targets of the sources: rows whose first cell is the key and whose second is the number."""
     for index, block in enumerate(section.blocks):
         for item, row in enumerate(block.rows if isinstance(block, Table) else ()):
-            key = row.cells[0]
-            if isinstance(key, str) and key not in numbering.sources:
-                numbering.sources.add(key)
+            key, number = (*row.cells, "")[:2]
+            if isinstance(key, str) and isinstance(number, str) and key not in numbering.sources:
+                numbering.sources[key] = number
                 numbering.anchors[section.id, index, item] = source_anchor(key)
 
 

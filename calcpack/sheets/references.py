@@ -15,7 +15,7 @@ from calcpack.sheets.job import Job
 from calcpack.sheets.registers import TO_CONFIRM, count
 from calcpack.values import CONFIRMED, UNCONFIRMED
 
-KEY = "references"  # citations link to the first cells of this sheet's tables
+KEY = "references"  # citations print the number in the second cell of a row for the key in its first
 
 
 def fill(job: Job) -> Sheet:
@@ -107,10 +107,13 @@ def _documents(job: Job) -> tuple[Block, ...]:
     blocks: list[Block] = []
     if rows:
         blocks.append(Table("Documents of the project", columns, tuple(rows)))
-    others = dict.fromkeys(text for text in sources if text and text not in named)
+    others = Counter(text for text in sources if text and text not in named)
     if others:
-        blocks.append(Table("Other sources that inputs name", (Column("Source as written", width=4.0),),
-                            tuple(Row((text,)) for text in others)))
+        columns = (Column("Source as written", width=4.0), Column("Cited", "", "count", width=0.8))
+        numbers = {text: count(job, f"count/source/{text}", number, f"{text}: inputs that name it")
+                   for text, number in others.items()}
+        blocks.append(Table("Other sources that inputs name", columns,
+                            tuple(Row((text, Ref(entry.id))) for text, entry in numbers.items())))
     without = count(job, "count/inputs-without-source", sources.count(""), "Number of inputs that name no source")
     blocks.append(Prose(f"Inputs that name no source: {{{without.id}}}."))
     return tuple(blocks)
