@@ -41,7 +41,9 @@ def _labels(job: Job) -> SchematicLabels:
             tag: {name: f"{tag}/z@{name}" for name in node.levels if f"{tag}/z@{name}" in job.ledger}
             for tag, node in system.nodes.items() if node.kind == TANK and node.levels
         },
-        pump_entries={tag: _booked(job, f"{tag}/z", f"{tag}/Q@{case.id}", f"{tag}/H@{case.id}") for tag in system.pumps},
+        pump_entries={
+            tag: _booked(job, f"{tag}/z", f"{tag}/Q@{case.id}", f"{tag}/H@{case.id}") for tag in system.pumps
+        },
     )
 
 
@@ -81,7 +83,7 @@ def _case_curve(job: Job, tag: str, case: Case) -> CaseCurve:
         return _one(job, f"{tag}/{symbol}@{case.id}")
 
     return CaseCurve(
-        case.id, system=f"curve/system/{tag}@{case.id}", flow=at("Q"), head=at("H"), static=at("H_st"),
+        case.id, system=_one(job, f"curve/system/{tag}@{case.id}"), flow=at("Q"), head=at("H"), static=at("H_st"),
         efficiency=at("eta"), npsha=at("NPSHA"), npshr=at("NPSHR"), power=at("P_s"),
     )
 
@@ -99,7 +101,8 @@ def _required(job: Job, tag: str) -> tuple[str, str] | None:
 def _grade_spec(job: Job, pump: Pump) -> GradeLineSpec:
     tag, ledger = pump.tag, job.ledger
     stem = f"grade/{tag}/"
-    case = next(one for one in (job.project.case(job.project.normal_case), *job.cases) if f"{stem}axis@{one.id}" in ledger)
+    candidates = (job.project.case(job.project.normal_case), *job.cases)
+    case = next(one for one in candidates if f"{stem}axis@{one.id}" in ledger)
     path = pump_path(case, job.solved(case), pump)
     reach = sum(line.length.si for line in path.suction)
     total = sum(line.length.si for line in path.lines)

@@ -21,6 +21,7 @@ from system_projects import (
     liquid,
     loss,
     outlet,
+    published_case,
     pump,
     required_head,
     stated,
@@ -282,8 +283,6 @@ def speed_for_three_quarters_of_the_flow(case, folder):
 
     The speed that passes the stated flow is interpolated between them.
     """
-    from system_projects import published_case
-
     first = published_case("OP-04")
     allowed = case.allowed("speed_2")
     speeds = [si(case.expected["speed_2"]) + step * allowed for step in (-1, 0, 1)]

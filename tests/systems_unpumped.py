@@ -10,7 +10,20 @@ from itertools import pairwise
 from pathlib import Path
 
 from published_cases import PublishedCase, si
-from system_projects import Computed, Sketch, junction, line, liquid, loss, outlet, stated, stub, tank, water
+from system_projects import (
+    Computed,
+    Sketch,
+    junction,
+    line,
+    liquid,
+    loss,
+    outlet,
+    published_case,
+    stated,
+    stub,
+    tank,
+    water,
+)
 from systems_pumped import FANNING, STRESS, system
 
 G = si("1 standard_gravity")
@@ -34,8 +47,6 @@ def two_pipes_and_a_rise(case, folder):
 
     The pressure at the start is the total head there less elevation and velocity head.
     """
-    from system_projects import published_case
-
     whole = published_case("PS-03")
     beta = whole["inside_diameter_1"] / whole["inside_diameter_2"]
     factor, enlargement = whole["friction_factor"], (1 - beta**2) ** 2
@@ -51,18 +62,26 @@ def two_pipes_and_a_rise(case, folder):
     return {"pressure_difference": pressure(made, made.head("J-1") - made.at("L-1/V") ** 2 / (2 * G))}
 
 
+def drain(case: PublishedCase, **friction: str) -> Sketch:
+    """The tank of PS-05 draining through its line; ``friction`` is a factor or a roughness.
+
+    Reduced seat of the ball valve: seat, gradual contraction and enlargement at the stated angles, on the seat bore.
+    """
+    beta, f_T = case["ball_seat"] / case["inside_diameter"], case["fT"]
+    narrowing = 0.8 * math.sin(case["inlet_angle"] / 2) * (1 - beta**2)
+    widening = 2.6 * math.sin(case["outlet_angle"] / 2) * (1 - beta**2) ** 2
+    ball = (3 * f_T + narrowing + widening) / beta**4
+    elbows = {"type": "elbow", "K": case["elbow_coefficient"] * f_T, "count": 6}
+    pipe = line("T-1", "N-2", stated(case, "inside_diameter"), stated(case, "length"), fittings=[elbows],
+                k={"entrance": 0.5, "ball_valve": f"{ball:.8g}", "exit": 1}, **friction)  # fmt: skip
+    return Sketch(nodes={"T-1": tank(stated(case, "head")), "N-2": outlet("0 m")}, lines={"L-1": pipe},
+                  liquid=liquid("1000 kg/m3"), source=case.source)  # fmt: skip
+
+
 @system("PS-05")
 def draining_tank(case, folder):
     """The friction factor is the fully turbulent one throughout, as in the source."""
-    beta, f_T = case["ball_seat"] / case["inside_diameter"], case["fT"]
-    inlet = 0.8 * math.sin(case["inlet_angle"] / 2) * (1 - beta**2)
-    outlet_cone = 2.6 * math.sin(case["outlet_angle"] / 2) * (1 - beta**2) ** 2
-    ball = (3 * f_T + inlet + outlet_cone) / beta**4
-    pipe = line("T-1", "N-2", stated(case, "inside_diameter"), stated(case, "length"), factor=stated(case, "fT"),
-                k={"entrance": 0.5, "ball_valve": f"{ball:.8g}", "exit": 1},
-                fittings=[{"type": "elbow", "K": case["elbow_coefficient"] * f_T, "count": 6}])  # fmt: skip
-    made = Sketch(nodes={"T-1": tank(stated(case, "head")), "N-2": outlet("0 m")}, lines={"L-1": pipe},
-                  liquid=liquid("1000 kg/m3"), source=case.source).computed(folder)  # fmt: skip
+    made = drain(case, factor=stated(case, "fT")).computed(folder)
     return {"velocity": made.at("L-1/V"), "flow": made.at("L-1/Q")}
 
 

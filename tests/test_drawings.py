@@ -222,6 +222,16 @@ def test_grade_line_names_its_case_and_the_lowest_pressure(drawings):
         assert f"{ledger[one].title} {display_text(ledger[one], 'SI')}" in words
 
 
+def test_a_far_rating_line_does_not_squash_the_profile():
+    ledger, spec = curves.coldharbour_grade()
+    far = [(x, y + 2000.0) for x, y in ledger["grade/rating"].points]
+    ledger.series("grade/far", "rating", "z_r", "elevation", far, points_kind="length")
+    texts = {text.text: text.box for text in texts_of(grade_line(ledger, replace(spec, rating="grade/far")))}
+    assert "3000" in texts and texts["3000"].y1 < texts["880"].y0
+    assert texts["720"].y0 - texts["880"].y0 > 150.0  # points; most of the height shows the grade lines
+    assert overlapping(texts_of(grade_line(ledger, replace(spec, rating="grade/far")))) == []
+
+
 def test_our_width_of_a_text_is_that_of_the_font():
     from fontTools.ttLib import TTFont
 

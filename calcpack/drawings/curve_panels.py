@@ -51,8 +51,14 @@ class Curves:
 
     def heads(self) -> list[Columns]:
         """Every curve of the head panel."""
-        systems = [self.series(case.system) for case in self.spec.cases if case.system]
+        systems = [columns for _, _, columns in self.systems()]
         return systems + [self.series(pump.head, units) for pump in self.spec.pumps for units in pump.units]
+
+    def systems(self) -> list[tuple[int, str, Columns]]:
+        """Position and label of every case with the curve of its system; cases whose series is empty are left out."""
+        cases = [(index, case) for index, case in enumerate(self.spec.cases) if case.system]
+        found = [(index, case.case, self.series(case.system)) for index, case in cases]
+        return [one for one in found if one[2][0]]
 
     def most_units(self) -> int:
         """Units in parallel for which the lower panels are drawn."""
@@ -87,7 +93,7 @@ class Curves:
         """Flows with the lowest and highest system head, where every system curve has data."""
         import numpy as np
 
-        curves = [self.series(case.system) for case in self.spec.cases if case.system]
+        curves = [columns for _, _, columns in self.systems()]
         if len(curves) < 2:
             return None
         low, high = max(xs[0] for xs, _ in curves), min(xs[-1] for xs, _ in curves)

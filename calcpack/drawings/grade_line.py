@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from typing import TYPE_CHECKING
 
 from calcpack.drawings.free_space import free_rectangle
 from calcpack.drawings.geometry import Box
@@ -14,6 +15,9 @@ from calcpack.ledger import Ledger
 from calcpack.ledger.text import display_text
 from calcpack.quantities import KINDS
 
+if TYPE_CHECKING:
+    from matplotlib.axes import Axes
+
 WIDTH = 170.0  # mm
 LEFT, RIGHT, TOP, HEIGHT_OF_AXES, FOOT = 15.0, 33.0, 5.0, 104.0, 9.0
 ROOM = 0.06  # of the range of elevations, above and below
@@ -22,7 +26,8 @@ CLOSE = 4.0  # mm between grade and axis, under which the lowest point is drawn 
 ENLARGED = ((48.0, 28.0), (40.0, 24.0), (34.0, 20.0))  # mm, in order of liking
 MARGINS = (13.0, 8.0)  # mm, for the ticks and the name of the enlarged part
 SAME = 0.6  # mm between the two grade lines, under which a note says that they coincide
-_FRAME = Box(LEFT, TOP, WIDTH - RIGHT, TOP + HEIGHT_OF_AXES)
+FAR_ABOVE = 0.6  # of the range of everything else, from which the rating line gets a piece of the axis to itself
+UPPER, BREAK = 14.0, 2.4  # mm: height of that piece, and the break under it
 
 
 @dataclass(frozen=True)
@@ -58,9 +63,28 @@ class _Profile:
         self.across = KINDS["length"].display_unit(ledger.system)
         self.up = KINDS["elevation"].display_unit(ledger.system)
         self.page = Page(WIDTH, TOP + HEIGHT_OF_AXES + FOOT)
-        self.axes = self.page.axes(LEFT, TOP, WIDTH - LEFT - RIGHT, HEIGHT_OF_AXES)
         drawn = [(curve, getattr(spec, curve.series)) for curve in _CURVES if getattr(spec, curve.series)]
         self.lines = [(curve, *self._series(entry_id)) for curve, entry_id in drawn]
+        self.every = [y for curve, _, ys in self.lines if curve.series != "rating" for y in ys]
+        self.every += [self.up.from_si(ledger[level.level].value) for level in spec.levels]
+        cut = self._cut()
+        self.frame = Box(LEFT, TOP + cut, WIDTH - RIGHT, TOP + HEIGHT_OF_AXES)
+        self.axes = self._axes(self.frame)
+        self.upper = self._axes(Box(LEFT, TOP, WIDTH - RIGHT, TOP + cut - BREAK)) if cut else None
+
+    def _axes(self, frame: Box) -> Axes:
+        return self.page.axes(frame.x0, frame.y0, frame.x1 - frame.x0, frame.y1 - frame.y0)
+
+    def _cut(self) -> float:
+        """Height (mm) to set apart for a rating line that lies far above everything else; else 0 and it joins in."""
+        rating = self._rating()
+        if rating and min(rating) - max(self.every) > FAR_ABOVE * (max(self.every) - min(self.every)):
+            return UPPER + BREAK
+        self.every += rating
+        return 0.0
+
+    def _rating(self) -> list[float]:
+        return [y for curve, _, ys in self.lines if curve.series == "rating" for y in ys]
 
     def _series(self, entry_id: str) -> tuple[list[float], list[float]]:
         points = self.ledger[entry_id].points
@@ -68,22 +92,16 @@ class _Profile:
 
     def svg(self) -> str:
         spec = self.spec
-        every = [y for _, _, ys in self.lines for y in ys]
-        every += [self.up.from_si(self.ledger[level.level].value) for level in spec.levels]
-        room = ROOM * (max(every) - min(every))
-        end = max(xs[-1] for _, xs, _ in self.lines)
-        self.axes.set_xlim(-0.01 * end, end * 1.01)
-        self.axes.set_ylim(min(every) - room, max(every) + room)
-        set_ticks(self.page, self.axes, "y", 12)
-        set_ticks(self.page, self.axes, "x", 10, drop=2.4)
+        self._scales()
         tracks, ends = [], []
         for curve, xs, ys in self.lines:
-            self.axes.plot(xs, ys, color=curve.colour, linewidth=curve.width, linestyle=curve.dash, zorder=3)
-            track = [self._at(x, y) for x, y in zip(xs, ys, strict=True)]
+            axes = self.upper if self.upper and curve.series == "rating" else self.axes
+            axes.plot(xs, ys, color=curve.colour, linewidth=curve.width, linestyle=curve.dash, zorder=3)
+            track = [self.page.place(axes, x, y) for x, y in zip(xs, ys, strict=True)]
             tracks += track_boxes(track)
             ends.append((*track[-1], curve.name))
         texts = end_labels(self.page, ends, WIDTH - RIGHT + 3.2, TOP + 1.5, TOP + HEIGHT_OF_AXES - 1.5)
-        self._marks(Placer(_FRAME, texts, tracks))
+        self._marks(Placer(self.frame, texts, tracks))
         self.page.text(LEFT, 2.0, spec.title)
         middle = TOP + HEIGHT_OF_AXES / 2
         self.page.text(TITLE_AT, middle, axis_title(symbol("z"), self.up), anchor="center", turned=True)
@@ -94,10 +112,24 @@ class _Profile:
             self.page.text(WIDTH - RIGHT, 2.0, note, anchor="right")
         return self.page.svg()
 
+    def _scales(self) -> None:
+        """Limits and ticks; a rating line set apart gets its own piece of the elevation axis."""
+        end = max(xs[-1] for _, xs, _ in self.lines)
+        pieces = [(self.axes, self.every, 12)] + ([(self.upper, self._rating(), 3)] if self.upper else [])
+        for axes, heights, most in pieces:
+            room = ROOM * max(max(heights) - min(heights), 1.0)
+            axes.set_xlim(-0.01 * end, end * 1.01)
+            axes.set_ylim(min(heights) - room, max(heights) + room)
+            set_ticks(self.page, axes, "y", most)
+            set_ticks(self.page, axes, "x", 10, drop=2.4 if axes is self.axes else 0.0)
+        if self.upper:
+            for y in (self.frame.y0 - BREAK, self.frame.y0):
+                self.page.line((LEFT - 1.2, LEFT + 1.2), (y + 0.6, y - 0.6), 0.6)
+
     def _grades_apart(self) -> float:
         """Greatest distance (mm) between the two grade lines."""
         (_, energy), (_, hydraulic) = self._series(self.spec.energy), self._series(self.spec.hydraulic)
-        scale = HEIGHT_OF_AXES / (self.axes.get_ylim()[1] - self.axes.get_ylim()[0])
+        scale = (self.frame.y1 - self.frame.y0) / (self.axes.get_ylim()[1] - self.axes.get_ylim()[0])
         return max((abs(a - b) for a, b in zip(energy, hydraulic, strict=False)), default=0.0) * scale
 
     def _at(self, x: float, y: float) -> tuple[float, float]:
@@ -133,7 +165,7 @@ class _Profile:
     def _enlarged(self, placer: Placer, at: float) -> None:
         """The surroundings of the lowest pressure once more, where there is room, at a scale that shows the margin."""
         sizes = [(width + MARGINS[0], height + MARGINS[1]) for width, height in ENLARGED]
-        room = free_rectangle(sizes, [*placer.texts, *placer.curves], _FRAME.grown(-1.0), 1.2)
+        room = free_rectangle(sizes, [*placer.texts, *placer.curves], self.frame.grown(-1.0), 1.2)
         if room is None:
             return
         axes = self.page.axes(

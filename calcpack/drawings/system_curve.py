@@ -116,14 +116,11 @@ class _Plot:
         band = self.curves.band()
         if band:
             self.axes.fill_between(*band, color=BAND, linewidth=0, zorder=0.8)
-        for index, case in enumerate(self.spec.cases):
-            if not case.system:
-                continue
-            xs, ys = self.curves.series(case.system)
+        for index, case, (xs, ys) in self.curves.systems():
             dash = LINE_STYLES[index % len(LINE_STYLES)]
             self.axes.plot(xs, ys, color=INK, linewidth=0.8, linestyle=dash, zorder=2.2)
             self.axes.plot(xs[:1], ys[:1], "o", color=INK, markersize=2.2, zorder=3, clip_on=False)
-            ends.append(self._track(xs, ys, f"system, case {case.case}"))
+            ends.append(self._track(xs, ys, f"system, case {case}"))
         return ends
 
     def _pumps(self) -> list[tuple[float, float, str]]:

@@ -1,6 +1,12 @@
 """Local losses: coefficients of fittings and valves, equipment, and the loss of a line as a whole."""
 
-from calcpack.formulas.formula import formula
+import math
+
+from calcpack.formulas.formula import Formula, formula
+
+GRADUAL_LIMIT = math.pi / 4  # included angle, 45 degrees
+_BORES = {"D_s / D_l": (0.0, 1.0)}
+_ON_SMALL_BORE = "on the velocity head of the small bore D_s"
 
 FULLY_TURBULENT = formula(
     "fittings.fully_turbulent", "Fully turbulent friction factor", "f_T = 0.25 / log10(eps_T / (3.7 * D))**2",
@@ -65,3 +71,49 @@ CHECK_VALVE_VELOCITY = formula(
     source="TP410", locator="2009 metric edition, appendix A",
     note="N belongs to the pattern of the valve, for m/s and kg/m³",
 )
+
+SUDDEN_ENLARGEMENT = formula(
+    "fittings.sudden_enlargement", "Loss coefficient of a sudden enlargement", "K = (1 - (D_s / D_l)**2)**2",
+    K="loss_coefficient", D_s="diameter", D_l="diameter",
+    source="HI-DATABOOK", locator="eq. 3.B.3", valid=_BORES, note=_ON_SMALL_BORE,
+)
+
+GRADUAL_ENLARGEMENT = formula(
+    "fittings.gradual_enlargement", "Loss coefficient of a gradual enlargement",
+    "K = 2.6 * sin(theta / 2) * (1 - (D_s / D_l)**2)**2",
+    K="loss_coefficient", theta="angle", D_s="diameter", D_l="diameter",
+    source="TP410", locator="2009 edition, included angle theta", valid={"theta": (0.0, GRADUAL_LIMIT), **_BORES},
+    note=_ON_SMALL_BORE,
+)
+
+SUDDEN_CONTRACTION = formula(
+    "fittings.sudden_contraction", "Loss coefficient of a sudden contraction", "K = 0.5 * (1 - (D_s / D_l)**2)",
+    K="loss_coefficient", D_s="diameter", D_l="diameter",
+    source="TP410", locator="2009 edition", valid=_BORES, note=_ON_SMALL_BORE,
+)
+
+STEEP_CONTRACTION = formula(
+    "fittings.steep_contraction", "Loss coefficient of a steep contraction",
+    "K = 0.5 * sqrt(sin(theta / 2)) * (1 - (D_s / D_l)**2)",
+    K="loss_coefficient", theta="angle", D_s="diameter", D_l="diameter",
+    source="TP410", locator="2009 edition, included angle theta",
+    valid={"theta": (GRADUAL_LIMIT, math.pi), **_BORES}, note=_ON_SMALL_BORE,
+)
+
+GRADUAL_CONTRACTION = formula(
+    "fittings.gradual_contraction", "Loss coefficient of a gradual contraction",
+    "K = 0.8 * sin(theta / 2) * (1 - (D_s / D_l)**2)",
+    K="loss_coefficient", theta="angle", D_s="diameter", D_l="diameter",
+    source="TP410", locator="2009 edition, included angle theta", valid={"theta": (0.0, GRADUAL_LIMIT), **_BORES},
+    note=_ON_SMALL_BORE,
+)
+
+
+def enlargement_formula(angle: float) -> Formula:
+    """Formula of an enlargement by its included angle, rad: beyond 45 degrees it counts as sudden."""
+    return GRADUAL_ENLARGEMENT if angle <= GRADUAL_LIMIT else SUDDEN_ENLARGEMENT
+
+
+def contraction_formula(angle: float) -> Formula:
+    """Formula of a contraction by its included angle, rad; STEEP_CONTRACTION at 180 degrees is the sudden one."""
+    return GRADUAL_CONTRACTION if angle <= GRADUAL_LIMIT else STEEP_CONTRACTION

@@ -10,6 +10,18 @@ FLOW_PER_PUMP = formula(
     source="CONTINUITY", locator="equal pumps in parallel", valid={"i": (1.0, None)},
 )
 
+PARALLEL_FLOW = formula(
+    "pump.parallel_flow", "Flow of all pumps in parallel", "Q = sum(Q_i)",
+    Q="flow", Q_i="flow[]",
+    source="CONTINUITY", locator="flows of the pumps at their common head",
+)
+
+SERIES_HEAD = formula(
+    "pump.series_head", "Head of all pumps in series", "H = sum(H_i)",
+    H="head", H_i="head[]",
+    source="BERNOULLI", locator="heads of the pumps at their common flow",
+)
+
 PUMP_HEAD = formula(
     "pump.head", "Total head of the pump", "H = H_d - H_s",
     H="head", H_d="head", H_s="head",

@@ -47,7 +47,7 @@ def case_solutions(group: Group, result: Result, units: str) -> dict[str, CaseSo
                 float(result.energy[b]),
                 bool(result.converged[b]),
             ),
-            findings[b],
+            findings=findings[b],
         )
     return made
 

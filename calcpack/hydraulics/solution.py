@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 
 
 @dataclass(frozen=True)
@@ -45,6 +45,17 @@ class PumpDuty:
 
 
 @dataclass(frozen=True)
+class ValveState:
+    """A regulating or balancing valve: ``state`` 'active' (holds its setting), 'open' (cannot reach it), 'shut' or
+    'solved' (balanced); head lost in it (m); the flow coefficient that this takes (SI, m3/s), inf when it loses nothing.
+    """
+
+    state: str
+    head: float
+    coefficient: float
+
+
+@dataclass(frozen=True)
 class Convergence:
     """How the solution was reached: iterations, the largest continuity residual (m3/s) and energy residual (m)."""
 
@@ -64,6 +75,8 @@ class CaseSolution:
     lines: Mapping[str, LineFlow]
     pumps: Mapping[str, PumpDuty]
     convergence: Convergence
+    valves: Mapping[str, ValveState] = field(default_factory=dict)
+    speeds: Mapping[str, float] = field(default_factory=dict)  # pump -> fraction of the curve's speed, where not 1
     findings: tuple[Finding, ...] = ()
 
 

@@ -6,7 +6,7 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 
 from calcpack.values import Value
 
@@ -163,24 +163,58 @@ class Fitting:
         return "check" in self.type or self.type.startswith("foot_valve")
 
 
+# Laws of a head loss.
+QUADRATIC = "quadratic"  # head at a flow, scaled with the square of the flow
+FIXED = "fixed"  # head whatever the flow
+KV = "kv"  # flow coefficient
+TABLE = "table"  # heads at flows, monotone cubic between
+SHUT = "shut"  # passes nothing
+
+# What a regulating valve holds.
+HOLDS_FLOW = "flow"
+HOLDS_DOWNSTREAM = "downstream pressure"  # gauge pressure at the end node of its line
+HOLDS_UPSTREAM = "upstream pressure"  # gauge pressure at the start node of its line
+
+
 @dataclass(frozen=True)
 class LossState:
-    """Head loss of equipment in one state: law 'quadratic' (head at a flow) or 'fixed' (head whatever the flow)."""
+    """Head loss of equipment in one state.
+
+    ``head`` and ``flow`` belong to QUADRATIC and FIXED; ``coefficient`` (flow_coefficient_kv) to KV; ``points`` (flow,
+    head) to TABLE. A loss that the user stated as pressure has become head with ``density``; ``drop`` keeps it.
+    """
 
     name: str
     law: str
-    head: Value
-    flow: Value | None
+    head: Value | None = None
+    flow: Value | None = None
+    coefficient: Value | None = None
+    points: tuple[tuple[Value, Value], ...] = ()
+    drop: Value | None = None
+    density: Value | None = None
+
+
+@dataclass(frozen=True)
+class Control:
+    """What a regulating valve holds: one of HOLDS_FLOW (a flow), HOLDS_DOWNSTREAM, HOLDS_UPSTREAM (gauge_pressure)."""
+
+    holds: str
+    setting: Value
 
 
 @dataclass(frozen=True)
 class Equipment:
-    """An in-line item with one or more states (clean, dirty)."""
+    """An in-line item with one or more states (clean, dirty; open, shut).
+
+    A regulating valve has a ``control``; fully open it loses what its state says. A balancing valve (type
+    ``balancing_valve``) may be solved by a case for a wanted flow, between shut and its state's coefficient.
+    """
 
     tag: str
     type: str
     description: str
     states: Mapping[str, LossState]
+    control: Control | None = None
 
 
 @dataclass(frozen=True)
@@ -281,6 +315,15 @@ class Pump:
     motor: Motor | None
     rated_flow: Value | None = None
     type: str = ""
+    speed_low: Value | None = None  # allowed speed range of a variable-speed pump (rotational_speed)
+    speed_high: Value | None = None
+    impeller: Value | None = None  # diameter of the curve
+    impeller_low: Value | None = None
+    impeller_high: Value | None = None
+    allowable_low: Value | None = None  # maker's allowable region, fraction of best-efficiency flow
+    allowable_high: Value | None = None
+    acceptance_grade: str = ""  # of ISO 9906
+    viscosity_correction: bool = True  # correct the water curve where the liquid asks for it
 
 
 @dataclass(frozen=True)
@@ -305,6 +348,19 @@ class Override:
 
 
 @dataclass(frozen=True)
+class Balance:
+    """What a case solves for: balancing valves set so that each line in ``flows`` carries its flow.
+
+    ``valves`` maps each of those lines to its balancing valve. The valve of the line that needs most head (the index)
+    stays open and the speed of ``pump`` brings it to its flow; without ``pump`` the index line takes what it gets.
+    """
+
+    flows: Mapping[str, Value]
+    valves: Mapping[str, str]
+    pump: str = ""
+
+
+@dataclass(frozen=True)
 class Case:
     """One operating case: the system as overridden, and the named state of each part.
 
@@ -320,6 +376,10 @@ class Case:
     roughness: Mapping[str, str]
     equipment: Mapping[str, str]
     pumps: Mapping[str, int]
+    speeds: Mapping[str, Value] = field(default_factory=dict)  # fraction of the curve's speed, where not 1
+    trims: Mapping[str, Value] = field(default_factory=dict)  # impeller diameter, where not that of the curve
+    balance: Balance | None = None
+    settings_of: str = ""  # id of the case whose solved settings (valves, speed) this case keeps
     purposes: tuple[str, ...] = ()
     overrides: tuple[Override, ...] = ()
 

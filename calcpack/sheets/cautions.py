@@ -28,7 +28,7 @@ from calcpack.sheets.caution_words import (
 from calcpack.sheets.content import Column, Prose, Row, Section, Sheet, Table
 from calcpack.sheets.criteria import house_limit
 from calcpack.sheets.job import Job, greatest
-from calcpack.sheets.path import pump_path
+from calcpack.sheets.path import at_rest, pump_path
 from calcpack.sheets.registers import count, open_counts, plain
 from calcpack.sheets.total_head import end_head
 
@@ -143,7 +143,10 @@ def _stored(job: Job) -> Iterator[Caution]:
 
 
 def _column(job: Job, pump: Pump, cases: list[Case]) -> Iterator[Caution]:
-    ends = [end_head(job, case, pump_path(case, job.solved(case), pump).delivery) for case in cases]
+    deliveries = [(case, pump_path(case, job.solved(case), pump).delivery) for case in cases]
+    ends = [end_head(job, case, tag) for case, tag in deliveries if at_rest(case, tag)]
+    if not ends:
+        return
     highest = max(ends, key=lambda entry: entry.value)
     shaft = job.input(f"{pump.tag}/z", pump.shaft_elevation, "z_p", f"{pump.tag}: elevation of the shaft centre")
     if highest.value > shaft.value:

@@ -24,7 +24,8 @@ def fill(job: Job) -> Sheet:
         required = from_volume
     if requirement.flow is not None and from_volume is not None:
         blocks.append(
-            Prose(f"The stated required flow {{{required.id}}} is carried on; the daily volume gives {{{from_volume.id}}}.")
+            Prose(f"The stated required flow {{{required.id}}} is carried on; the daily volume gives "
+                  f"{{{from_volume.id}}}.")
         )
     design = design_flow(job, required)
     if design is not required:

@@ -9,7 +9,7 @@ from calcpack.project.model import OUTLET, Case, Line, Pump
 from calcpack.sheets.content import Block, Column, Derivation, Figure, Prose, Ref, Row, Section, Sheet, Table, Verdicts
 from calcpack.sheets.criteria import AT_LEAST, judge
 from calcpack.sheets.job import Job, case_label, least
-from calcpack.sheets.path import Path, pump_path
+from calcpack.sheets.path import Path, at_rest, pump_path
 from calcpack.sheets.pressures import velocity_head_of
 from calcpack.sheets.total_head import end_head
 from calcpack.values import LOOKED_UP, Value
@@ -154,13 +154,15 @@ def _series(job: Job, case: Case, pump: Pump, path: Path, stems: list[str]) -> N
             hydraulic += [(distance, start - rise), (distance + reach, end - rise)]
         distance += ledger[f"{line.tag}/L"].value
     boiling = _head(job, case, ledger["site/p_atm"].value - ledger[f"liquid/p_v@{case.temperature}"].value)
-    at_rest = end_head(job, case, path.delivery).value
     curves = [
         ("axis", "z", "elevation", axis, "Pipe axis"), ("egl", "H", "head", energy, "Energy grade line"),
         ("hgl", "z_h", "elevation", hydraulic, "Hydraulic grade line"),
         ("vapour", "z_v", "elevation", [(x, z - boiling) for x, z in axis], "Grade at which the liquid boils"),
-        ("standstill", "z_0", "elevation", [(x, at_rest) for x, _ in (axis[0], axis[-1])], "Grade with the pump stopped"),
     ]
+    if at_rest(case, path.delivery):
+        level = end_head(job, case, path.delivery).value
+        curves.append(("standstill", "z_0", "elevation", [(x, level) for x, _ in (axis[0], axis[-1])],
+                       "Grade with the pump stopped"))
     ratings = [line.rating.si for line in path.discharge if line.rating is not None]
     if len(ratings) == len(path.discharge):
         rated = _head(job, case, min(ratings))

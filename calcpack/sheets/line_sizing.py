@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 from calcpack.catalog import pipes
-from calcpack.catalog.errors import CatalogError
 from calcpack.formulas import fittings, pipe_flow
 from calcpack.ledger import Entry
 from calcpack.project.model import Case, Line
@@ -11,6 +10,7 @@ from calcpack.sheets.content import Block, Column, Derivation, Prose, Ref, Row, 
 from calcpack.sheets.criteria import AT_LEAST, AT_MOST, house_limit, judge
 from calcpack.sheets.job import Job
 
+ONE_FLOW = 1e-6  # relative: lines that differ by less carry the same flow
 NEIGHBOURS = 2  # catalog sizes shown on each side of the chosen one
 
 
@@ -37,10 +37,8 @@ def fill(job: Job) -> Sheet:
 def _sizing_flow(job: Job, line: Line, case: Case) -> Entry | None:
     """Design flow where the whole requirement passes the line; otherwise the line's own flow of the case."""
     own = f"{line.tag}/Q@{case.id}"
-    single = len(job.project.system.pumps) == 1 and all(
-        abs(job.solved(case).lines[tag].flow) == abs(job.solved(case).lines[line.tag].flow)
-        for tag in case.system.lines
-    )
+    flows = [abs(flow.flow) for flow in job.solved(case).lines.values()]
+    single = len(job.project.system.pumps) == 1 and max(flows) - min(flows) <= ONE_FLOW * max(flows)
     for key in ("duty/Q_des", "duty/Q_req"):
         if single and key in job.ledger:
             return job.ledger[key]
@@ -48,12 +46,9 @@ def _sizing_flow(job: Job, line: Line, case: Case) -> Entry | None:
 
 
 def _candidates(job: Job, case: Case, line: Line, flow: Entry) -> list[Block]:
-    try:
-        sizes = pipes.candidates(line.pipe.standard, line.pipe.schedule)
-        chosen = pipes.pipe(line.pipe.standard, line.pipe.size, line.pipe.schedule)
-    except CatalogError:
-        return []
-    position = [size.nominal for size in sizes].index(chosen.nominal)
+    sizes = pipes.candidates(line.pipe.standard, line.pipe.schedule)
+    position = [size.nominal for size in sizes].index(line.pipe.size)
+    chosen = sizes[position]
     shown = sizes[max(position - NEIGHBOURS, 0) : position + NEIGHBOURS + 1]
     rows, fitting = [], []
     for size in shown:
@@ -64,7 +59,7 @@ def _candidates(job: Job, case: Case, line: Line, flow: Entry) -> list[Block]:
             fitting.append(size)
         cells = (size.nominal, Ref(f"{key}/D"), Ref(f"{key}/V"), Ref(f"{key}/Re"), Ref(f"{key}/f"), Ref(f"{key}/J"),
                  Ref(f"{key}/h_f"), inside or "inside the limits")
-        rows.append(Row(cells, mark="chosen" if size is shown[min(position, NEIGHBOURS)] else ""))
+        rows.append(Row(cells, mark="chosen" if size is chosen else ""))
     smallest = fitting[0].nominal if fitting else None
     reason = "the smallest of the sizes shown that keeps the velocity inside its limits at the sizing flow"
     if smallest != chosen.nominal:

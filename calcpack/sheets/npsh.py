@@ -104,8 +104,8 @@ def _section(job: Job, pump: Pump, cases: list[Case], checks: tuple[str, ...]) -
     )
     blocks: tuple[Block, ...] = (
         Prose(
-            f"Datum of NPSH is the shaft centre {{{available['z_p']}}}. Total heads are used, so that the velocity head "
-            "at the suction port is included on both sides. Derived in full for the case of the least ratio: "
+            f"Datum of NPSH is the shaft centre {{{available['z_p']}}}. Total heads are used, so that the velocity "
+            "head at the suction port is included on both sides. Derived in full for the case of the least ratio: "
             f"case {case_label(case)}."
         ),
         Derivation(tuple(derived), governing=(governing.id, f"{tag}/m_N@{case.id}")),

@@ -25,6 +25,14 @@ class Path:
         return (*self.suction, *self.discharge)
 
 
+def at_rest(case: Case, tag: str) -> bool:
+    """True for a tank or outlet, whose head is known without a solution.
+
+    A path may also end at a demand, or at a port of another pump in series with this one.
+    """
+    return case.system.nodes[tag].kind in FIXED
+
+
 def pump_path(case: Case, solution: CaseSolution, pump: Pump) -> Path:
     """Follow the largest flow upstream and downstream of ``pump`` to nodes of known head.
 

@@ -5,11 +5,12 @@ from __future__ import annotations
 from calcpack.formulas import grade, liquid, pipe_flow, suction
 from calcpack.formulas import pump as formulas
 from calcpack.ledger import Entry
+from calcpack.ledger.entry import NOT_CHECKED
 from calcpack.project.model import Case, Line, Pump
 from calcpack.sheets.content import Block, Column, Derivation, Prose, Ref, Row, Section, Sheet, Table, Verdicts
 from calcpack.sheets.criteria import AT_LEAST, AT_MOST, house_limit, judge
 from calcpack.sheets.job import Job, case_label, least
-from calcpack.sheets.path import pump_path
+from calcpack.sheets.path import at_rest, pump_path
 from calcpack.sheets.pump_curve import value_at
 from calcpack.sheets.total_head import end_head
 from calcpack.values import LOOKED_UP, Value
@@ -116,6 +117,11 @@ def _advisory(job: Job, tag: str, gauges: list[Entry], limit: Entry) -> Entry:
 def _shut_off(job: Job, pump: Pump, cases: list[Case]) -> Section:
     """Greatest suction pressure without flow plus the highest head of the curve, against every rating."""
     tag, ledger = pump.tag, job.ledger
+    moving = _fed_by_no_surface(job, pump, cases)
+    if moving:
+        check = ledger.not_decided(f"check/pressure/{tag}", f"{tag}: greatest pressure against the ratings",
+                                   NOT_CHECKED, f"the suction pressure without flow is not known: {moving} feeds it")
+        return Section(f"shut-off-{tag}", f"{tag}: pressure at shut-off", (Verdicts((check.id,)),))
     highest = value_at(job, pump, "H", ledger[f"{tag}/Q_{_highest_point(pump)}"], "", f"{tag}/H_0")
     highest.symbol, highest.title = "H_0", "Highest head of the curve"
     case = max(cases, key=lambda one: end_head(job, one, pump_path(one, job.solved(one), pump).source).value)
@@ -144,7 +150,7 @@ def _shut_off(job: Job, pump: Pump, cases: list[Case]) -> Section:
                                 [greatest_pressure], rating, AT_MOST, band=band).id)
     if not checks:
         checks.append(ledger.not_decided(f"check/pressure/{tag}", f"{tag}: greatest pressure against the ratings",
-                                         "not checked", "the project states no rating").id)
+                                         NOT_CHECKED, "the project states no rating").id)
     blocks: tuple[Block, ...] = (
         Prose(
             "With a closed discharge the pump adds the highest head of its curve to the greatest suction pressure; "
@@ -155,6 +161,12 @@ def _shut_off(job: Job, pump: Pump, cases: list[Case]) -> Section:
         Verdicts(tuple(checks)),
     )
     return Section(f"shut-off-{tag}", f"{tag}: pressure at shut-off", blocks)
+
+
+def _fed_by_no_surface(job: Job, pump: Pump, cases: list[Case]) -> str:
+    """A node that is no free surface, a pump before this one or an inflow, and feeds the pump in some case."""
+    sources = {pump_path(case, job.solved(case), pump).source: case for case in cases}
+    return next((tag for tag, case in sources.items() if not at_rest(case, tag)), "")
 
 
 def _highest_point(pump: Pump) -> int:

@@ -18,13 +18,34 @@ def fill(job: Job) -> Sheet:
     """Book flow, head, efficiency, NPSHR and position of every pump in every case, and the criteria on them."""
     sections = []
     for pump in job.project.system.pumps.values():
-        cases = [case for case in job.cases if f"{pump.tag}/H_sys@{case.id}" in job.ledger]
-        duties = [case for case in cases if _book(job, case, pump)]
+        running = [case for case in job.cases if case.pumps.get(pump.tag)]
+        if not running:
+            continue
+        duties = [case for case in running if f"{pump.tag}/H_sys@{case.id}" in job.ledger and _book(job, case, pump)]
+        exists = _duty_exists(job, pump, running, duties).id
         if duties:
-            sections.append(_section(job, pump, duties, _judge(job, pump, duties)))
+            sections.append(_section(job, pump, duties, (exists, *_judge(job, pump, duties))))
+        else:
+            sections.append(Section(f"pump-duty-{pump.tag}", f"{pump.tag}: duty points", (Verdicts((exists,)),)))
     if not sections:
-        return Sheet("pump_duty", "Pump duty", omitted="no pump has a duty point in any case")
+        return Sheet("pump_duty", "Pump duty", omitted="no pump runs in any case")
     return Sheet("pump_duty", "Pump duty", tuple(sections))
+
+
+def _duty_exists(job: Job, pump: Pump, running: list[Case], duties: list[Case]) -> Entry:
+    """A duty inside the curve data in every case in which the pump runs; the solver's findings say why where not."""
+    tag, numbers = pump.tag, {}
+    for name, cases, title in (("duties", duties, "cases with a duty inside the curve data"),
+                               ("runs", running, "cases in which it runs")):
+        numbers[name] = job.ledger.looked_up(
+            f"{tag}/{name}", float(len(cases)), f"i_{name[0]}", f"{tag}: {title}", "count", source="DEFINITION",
+            locator="counted", digits=len(str(len(cases))),
+        )
+    missing = [case for case in running if case not in duties]
+    found = [f"case {case.id}: {finding.text}" for case in missing for finding in job.solved(case).findings
+             if finding.tag == tag]
+    return judge(job, f"duty-exists/{tag}", f"{tag}: a duty inside the curve data in every case", [numbers["duties"]],
+                 numbers["runs"], AT_LEAST, note=" ".join(found))
 
 
 def _book(job: Job, case: Case, pump: Pump) -> bool:
@@ -87,7 +108,8 @@ def _capacity(job: Job, pump: Pump, flows: list[Entry]) -> list[Entry]:
     if required is None or len(job.project.system.pumps) > 1:
         return []  # with several pump items the requirement is on the system, not on one of them
     band = house_limit(job, "capacity_band", "fraction", "3 %", 0.03, "Capacity: warning band")
-    checks = [judge(job, f"capacity/{tag}", f"{tag}: required flow in every case", flows, required, AT_LEAST, band=band)]
+    checks = [judge(job, f"capacity/{tag}", f"{tag}: required flow in every case", flows, required, AT_LEAST,
+                    band=band)]
     normal = f"{tag}/Q@{requirement.case or job.project.normal_case}"
     if "duty/Q_des" in ledger and normal in ledger:
         design = ledger["duty/Q_des"]

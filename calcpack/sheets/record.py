@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterable, Iterator, Sequence
 
+from calcpack.formulas import FORMULAS
 from calcpack.ledger import Entry
 from calcpack.ledger.entry import SERIES
 from calcpack.sheets.content import (
@@ -66,13 +67,18 @@ def printed(sheets: Iterable[Sheet]) -> set[str]:
 
 
 def _examples(job: Job, sheets: Iterable[Sheet]) -> tuple[str, ...]:
-    """The first entry of every formula that no sheet derives, so that each equation stands on paper once."""
-    derived = {job.ledger[entry_id].formula for block in _blocks(sheets) if isinstance(block, Derivation)
+    """The first entry of every equation that no sheet derives, so that each stands on paper once.
+
+    Margins are declared once for each kind of quantity with the same text: one of them shows it.
+    """
+    made = {entry.id: FORMULAS[entry.formula].equation.text for entry in job.ledger
+            if entry.formula and entry.origin != SERIES}
+    derived = {made.get(entry_id) for block in _blocks(sheets) if isinstance(block, Derivation)
                for entry_id in block.ids}
     first: dict[str, str] = {}
-    for entry in job.ledger:
-        if entry.formula and entry.formula not in derived and entry.origin != SERIES:
-            first.setdefault(entry.formula, entry.id)
+    for entry_id, text in made.items():
+        if text not in derived:
+            first.setdefault(text, entry_id)
     return tuple(first.values())
 
 

@@ -56,21 +56,29 @@ def _standing(one: Source) -> str:
 
 
 def _formulas(job: Job) -> Table:
-    columns = (Column("Formula", width=3.3), Column("Title", width=2.6), Column("Source", width=2.6),
+    columns = (Column("Formula", width=3.5), Column("Title", width=2.6), Column("Source", width=2.4),
                Column("Range of validity", width=2.0), Column("Used", "", "count", width=0.7),
-               Column("First use", width=0.9))
-    used = Counter(entry.formula for entry in job.ledger if entry.formula)
-    first: dict[str, str] = {}
+               Column("First use", width=1.2))
+    used: dict[str, list[Formula]] = {}  # by text: a margin is declared for each kind of quantity with the same text
+    uses, first = Counter(), {}
     for entry in job.ledger:
-        first.setdefault(entry.formula, entry.id)
+        if entry.formula:
+            formula = FORMULAS[entry.formula]
+            text = formula.equation.text
+            used.setdefault(text, []).append(formula)
+            uses[text] += 1
+            first.setdefault(text, entry.id)
+    numbers = cited(job)
     rows = []
-    for formula_id, number in used.items():
-        formula = FORMULAS[formula_id]
-        times = count(job, f"count/{formula_id}", number, f"{formula.title}: times used")
-        place = ", ".join(part for part in (formula.source, formula.locator) if part)
+    for text, made in used.items():
+        formula = made[0]
+        same = len({one.id for one in made}) > 1
+        name = formula.id.rpartition(".")[0] if same else formula.id
+        times = count(job, f"count/{name}", uses[text], f"{formula.title}: times used")
+        place = ", ".join(part for part in (numbers.get(formula.source, formula.source), formula.locator) if part)
         ranges = "; ".join(range_words(formula, limits, job.ledger.system) for limits in formula.valid)
-        rows.append(Row((formula_id, formula.title, place, ranges or "no limit declared", Ref(times.id),
-                         Ref(first[formula_id], "where"))))
+        rows.append(Row((name, formula.title, place, "by kind of quantity" if same else ranges or "no limit declared",
+                         Ref(times.id), Ref(first[text], "where"))))
     return Table("Formulas used and how often", columns, tuple(rows))
 
 

@@ -18,8 +18,8 @@ def section(job: Job) -> Section:
     """Recompute with the library and tabulate what this package uses, what the library gives, and the difference."""
     blocks: list[Block] = [
         Prose(
-            "Computed at run time by the open library fluids, whose code is independent of this program. Differences in "
-            "loss coefficients come from the library's own fit of the fully turbulent friction factor."
+            "Computed at run time by the open library fluids, whose code is independent of this program. Differences "
+            "in loss coefficients come from the library's own fit of the fully turbulent friction factor."
         )
     ]
     for caption, rows in (
@@ -38,7 +38,8 @@ def _row(job: Job, label: str, own: Entry, library: float) -> Row:
         f"{own.id}/library", library, own.symbol, f"{own.title}: by the library", own.kind, source=SOURCE,
         residual=0.0, case=own.case, digits=max(own.digits, 4),
     )
-    gap = difference(job, f"{own.id}/d_library", "d", f"{own.title}: library against this package", own=own, other=other)
+    gap = difference(job, f"{own.id}/d_library", "d", f"{own.title}: library against this package", own=own,
+                     other=other)
     return Row((label, Ref(own.id, "quantity"), Ref(other.id, "quantity"), Ref(gap.id, "quantity")))
 
 

@@ -67,8 +67,8 @@ def _section(job: Job, pump: Pump, line: Line, cases: list[Case]) -> Section | N
         Derivation(ids, governing=(upper.id,)),
         Verdicts((check.id,)),
         Prose(
-            f"A stop within {{{time.id}}} counts as sudden. Valve closing and pump stopping times, check-valve slam and "
-            "the restart of a drained line are for the specialist.", "note",
+            f"A stop within {{{time.id}}} counts as sudden. Valve closing and pump stopping times, check-valve slam "
+            "and the restart of a drained line are for the specialist.", "note",
         ),
     )
     return Section(f"surge-{tag}", f"{tag} {line.description}", blocks)

@@ -2,11 +2,13 @@
 
 from __future__ import annotations
 
+from math import isfinite
+
 from calcpack.formulas import pump as formulas
 from calcpack.hydraulics.system_curve import crossings, system_curve
 from calcpack.ledger import Entry
 from calcpack.project.model import Case, Pump
-from calcpack.sheets.content import Block, Column, Figure, Ref, Row, Section, Sheet, Table, Verdicts
+from calcpack.sheets.content import Block, Column, Figure, Prose, Ref, Row, Section, Sheet, Table, Verdicts
 from calcpack.sheets.criteria import AT_MOST, judge
 from calcpack.sheets.job import Job, case_label
 from calcpack.values import LOOKED_UP, Value
@@ -33,8 +35,14 @@ def fill(job: Job) -> Sheet:
 def _section(job: Job, pump: Pump, cases: list[Case]) -> Section:
     tag = pump.tag
     _pump_series(job, pump)
-    for case in cases:
-        _system_series(job, pump, case)
+    curved = [case for case in cases if _system_series(job, pump, case)]
+    without = tuple(
+        Prose(f"Case {case_label(case)}: the system of {tag} has no curve. Demands alone set its flow, or there is no "
+              "solution at another flow.", "note") for case in cases if case not in curved
+    )
+    if not curved:
+        return Section(f"system-curve-{tag}", f"{tag}: system and pump curve", without)
+    cases = curved
     check = _one_crossing(job, pump, cases)
     normal = next((case for case in cases if case.id == job.project.normal_case), cases[0])
     blocks: tuple[Block, ...] = (
@@ -45,6 +53,7 @@ def _section(job: Job, pump: Pump, cases: list[Case]) -> Section:
             full_page=True,
         ),
         _table(job, pump, cases),
+        *without,
         Verdicts((check.id,)),
     )
     return Section(f"system-curve-{tag}", f"{tag}: system and pump curve", blocks)
@@ -73,13 +82,16 @@ def _pump_series(job: Job, pump: Pump) -> None:
                       points_kind="flow", formula=formulas.SHAFT_POWER.id)
 
 
-def _system_series(job: Job, pump: Pump, case: Case) -> None:
+def _system_series(job: Job, pump: Pump, case: Case) -> bool:
+    """Book the system curve of a case; False where it has none."""
     end = job.fits[pump.tag].head.flow_max * max(case.pumps.get(pump.tag, 1), 1)
     flows = [end * i / (POINTS - 1) for i in range(POINTS)]
     heads = system_curve(job.project, case.id, pump.tag, flows)
-    points = [(flow, head) for flow, head in zip(flows, heads, strict=True) if head == head]
+    if not all(isfinite(head) for head in heads):
+        return False
     job.ledger.series(f"curve/system/{pump.tag}@{case.id}", f"System curve, case {case_label(case)}", "H_sys", "head",
-                      points, points_kind="flow", case=case.id, source="BERNOULLI")
+                      zip(flows, heads, strict=True), points_kind="flow", case=case.id, source="BERNOULLI")
+    return True
 
 
 def _table(job: Job, pump: Pump, cases: list[Case]) -> Table:

@@ -27,8 +27,8 @@ def fill(job: Job) -> Sheet:
 def _statement() -> Section:
     return Section(
         "verification-statement", "What this sheet is",
-        (Prose("Everything here is computed by the program itself. It supports the checker and is not checking: a person "
-               "other than the originator checks inputs, method and results."),),
+        (Prose("Everything here is computed by the program itself. It supports the checker and is not checking: a "
+               "person other than the originator checks inputs, method and results."),),
     )
 
 
@@ -83,9 +83,9 @@ def _second(job: Job) -> list[Section]:
                Column("Second correlation", "Q_3", "flow"), Column("Difference", "d_3"),
                Column("Head, curve against system", "d_H"))
     blocks: tuple[Block, ...] = (
-        Prose(f"Second method: {next(iter(methods.values())).method}; it balances the energy round loops where the first "
-              f"one balances nodes. Second correlation: {SWAMEE_JAIN} in place of Colebrook-White. The last column compares "
-              "the head of the pump curve with the head that the sheets sum up along the path."),
+        Prose(f"Second method: {next(iter(methods.values())).method}; it balances the energy round loops where the "
+              f"first one balances nodes. Second correlation: {SWAMEE_JAIN} in place of Colebrook-White. The last column "
+              "compares the head of the pump curve with the head that the sheets sum up along the path."),
         Table("Flow by a second method and by a second correlation", columns, tuple(rows)),
     )
     return [Section("verification-second", "Second method and second correlation", blocks)]
@@ -116,8 +116,8 @@ def _ranges(job: Job) -> Section:
     columns = (Column("Entry", width=2.4), Column("Value"), Column("Outside the range of", width=1.6),
                Column("Source", width=2.0))
     return Section("verification-ranges", "Ranges of validity",
-                   (Prose("These results use a formula outside its declared range; they are not to be relied on without "
-                          "the responsible engineer's judgement.", "caution"),
+                   (Prose("These results use a formula outside its declared range; they are not to be relied on "
+                          "without the responsible engineer's judgement.", "caution"),
                     Table("Used outside the declared range", columns, rows)))
 
 
