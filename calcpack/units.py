@@ -50,6 +50,12 @@ _TYPED = {
     "kWh/m³": "kWh/m3", "kJ/(kg·K)": "kJ/(kg.K)", "Btu/(lb·°F)": "Btu/(lb.°F)", "s²/m⁵": "s2/m5", "s²/ft⁵": "s2/ft5",
 }  # fmt: skip
 
+# Words that name more than one unit, of which the unit library would silently take one: what to write instead.
+_AMBIGUOUS = {
+    **dict.fromkeys(("bbl", "barrel", "barrels"), "oil_bbl for 42 US gal, or the volume in US gal or m3"),
+    **dict.fromkeys(("ton", "tons"), "t for 1000 kg, short_ton for 2000 lb or long_ton for 2240 lb"),
+}  # fmt: skip
+
 # SI unit of glossary units that no kind prints.
 _SI_OF_OTHERS = {"km": "m", "L/s": "m³/s", "MPa": "Pa"}
 
@@ -212,6 +218,9 @@ def _wrong_dimension(written: str, found: str, number: str, wanted: Kind, system
 def _unusual_factor(written: str, number: str, unit: str, wanted: Kind, system: str) -> float:
     """Factor to SI of a unit outside the glossary, by pint. Raises UnitError."""
     plain = _spelling(unit)
+    for word in re.split(r"[ ./]", plain):
+        if word in _AMBIGUOUS:
+            raise UnitError(f"'{word}' in '{written}' names more than one unit", f"write {_AMBIGUOUS[word]}")
     if not _UNIT_CHARACTERS.fullmatch(unit) or not _UNUSUAL_UNIT.fullmatch(plain) or wanted.si in ("K", "rad/s", "1/J"):
         raise _unknown_unit(written, unit, number, wanted, system)
     try:

@@ -49,7 +49,7 @@ def system(*case_ids: str) -> Callable[[Solver], Solver]:
 
 
 def lift(case: PublishedCase, main: dict, *, rise: str, suction: dict | None = None, **more) -> Sketch:
-    """Tank at the datum, pump at the datum, one line ``main`` to a tank ``rise`` above; no suction pipe unless given."""
+    """Tank and pump at the datum, one line ``main`` to a tank ``rise`` above; no suction pipe unless given."""
     bore = main["pipe"]["bore"]
     return Sketch(
         nodes={"T-1": tank("0 m"), "T-2": tank(rise)},
@@ -227,9 +227,9 @@ def lift_above_a_reservoir(case, folder):
 
 @system("PS-28")
 def pump_test(case, folder):
-    """Gauges as closed tanks: the pressure is the gas pressure, the suction velocity head the level, the exit the other.
+    """Gauges as closed tanks: the reading is the gas pressure, the suction velocity head the level.
 
-    The pump ports must then show the gauge readings again.
+    The exit loses the velocity head of the discharge. The pump ports must then show the gauge readings again.
     """
     area = math.pi * case["suction_diameter"] ** 2 / 4
     h_v = (case["flow"] / area) ** 2 / (2 * si("1 standard_gravity"))

@@ -88,7 +88,8 @@ def draining_tank(case, folder):
 @system("PS-07")
 def reservoir_feeding_another(case, folder):
     k = {name: stated(case, f"K_{name}") for name in ("entrance", "two_elbows", "valve", "exit")}
-    pipe = line("J-1", "N-2", stated(case, "diameter"), stated(case, "length"), roughness=stated(case, "roughness"), k=k)
+    pipe = line("J-1", "N-2", stated(case, "diameter"), stated(case, "length"), roughness=stated(case, "roughness"),
+                k=k)  # fmt: skip
     made = needed(case, folder, pipe, tank(stated(case, "elevation_2")),
                   liquid=liquid(stated(case, "density"), stated(case, "viscosity")))  # fmt: skip
     return {"elevation_1": made.head("J-1"), "friction_factor": made.at("L-1/f")}
@@ -97,8 +98,10 @@ def reservoir_feeding_another(case, folder):
 @system("PS-12")
 def sulphuric_acid(case, folder):
     """Pressure over the whole energy of the jet: lift, friction and one velocity head."""
-    pipe = line("J-1", "N-2", stated(case, "diameter"), stated(case, "length"), factor=STRESS * case["phi"], k={"exit": 1})
-    made = needed(case, folder, pipe, outlet(stated(case, "lift")), inflow=f"{case['mass_flow'] / case['density']:.15g} m3/s",
+    pipe = line("J-1", "N-2", stated(case, "diameter"), stated(case, "length"), factor=STRESS * case["phi"],
+                k={"exit": 1})  # fmt: skip
+    made = needed(case, folder, pipe, outlet(stated(case, "lift")),
+                  inflow=f"{case['mass_flow'] / case['density']:.15g} m3/s",
                   liquid=liquid(stated(case, "density"), stated(case, "viscosity")))  # fmt: skip
     return {"pressure_drop": pressure(made, made.head("J-1"))}
 
@@ -125,8 +128,8 @@ def feed_tank(case, folder):
 @system("HL-18", "HL-19")
 def small_bore_at_six_gpm(case, folder):
     """New steel, water of 60 degF by look-up."""
-    pipe = line("J-1", "N-2", stated(case, "inside_diameter"), stated(case, "length"), roughness=stated(case, "roughness"),
-                k={"exit": 0})  # fmt: skip
+    pipe = line("J-1", "N-2", stated(case, "inside_diameter"), stated(case, "length"),
+                roughness=stated(case, "roughness"), k={"exit": 0})  # fmt: skip
     made = needed(case, folder, pipe, tank("0 ft"), liquid=water(stated(case, "temperature")), units="US")
     return {"friction_loss": made.at("L-1/h_f")}
 

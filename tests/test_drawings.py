@@ -227,8 +227,8 @@ def test_a_far_rating_line_does_not_squash_the_profile():
     far = [(x, y + 2000.0) for x, y in ledger["grade/rating"].points]
     ledger.series("grade/far", "rating", "z_r", "elevation", far, points_kind="length")
     texts = {text.text: text.box for text in texts_of(grade_line(ledger, replace(spec, rating="grade/far")))}
-    assert "3000" in texts and texts["3000"].y1 < texts["880"].y0
-    assert texts["720"].y0 - texts["880"].y0 > 150.0  # points; most of the height shows the grade lines
+    assert "3000" in texts and texts["3000"].y1 < texts["900"].y0
+    assert texts["720"].y0 - texts["900"].y0 > 150.0  # points; most of the height shows the grade lines
     assert overlapping(texts_of(grade_line(ledger, replace(spec, rating="grade/far")))) == []
 
 

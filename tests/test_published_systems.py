@@ -6,13 +6,26 @@ and a miss prints the source. The cases are worked out in ``systems_pumped``, ``
 
 import shutil
 import subprocess
+from dataclasses import replace
 from pathlib import Path
 
 import pytest
 import systems_npsh  # importing them fills SYSTEMS
 import systems_unpumped
 from published_cases import published, si
-from system_projects import PUMP, Sketch, line, liquid, outlet, published_case, stated, tank
+from system_projects import (
+    PUMP,
+    Computed,
+    Sketch,
+    junction,
+    line,
+    liquid,
+    outlet,
+    published_case,
+    pump_through,
+    stated,
+    tank,
+)
 from systems_pumped import STRESS, SYSTEMS, water_lifted_400_ft
 from systems_unpumped import needed, pressure
 
@@ -71,14 +84,14 @@ def test_misprint_is_not_reproduced(case_id, output, right, tmp_path):
 
 
 def test_power_that_a_companion_prints_32_times_too_large(tmp_path):
-    """HL-13 (first-hand, companion notebook to Fluid Mechanics for Chemical Engineers): 290.8 hp where HL-12 has 9.03."""
+    """HL-13 (first-hand, companion notebook to Fluid Mechanics for Chemical Engineers): 290.8 hp; HL-12 has 9.03."""
     results = work_out("HL-12", tmp_path)
     assert published_case("HL-13").misses(results)
     assert near(results["hydraulic_power"], "9.03 hp", 0.03)
 
 
 def test_impeller_of_a_similar_pump_follows_both_affinity_laws(tmp_path):
-    """PS-31 (first-hand, companion notebook): 0.173 m by an exponent of 1/5; speed and head found for PS-25 want 0.190 m."""
+    """PS-31 (first-hand, companion notebook): 0.173 m by an exponent of 1/5; what we find for PS-25 wants 0.190 m."""
     pump, scaled = published_case("PS-25"), published_case("PS-31")
     results = work_out("PS-25", tmp_path)
     faster = results["speed"] / pump["model_speed"]
@@ -103,7 +116,7 @@ def test_speed_is_found_by_the_affinity_parabola(tmp_path):
 
 
 def test_flow_between_laminar_and_turbulent_is_said(tmp_path):
-    """PS-12 (companion notebook) reads a turbulent chart value at Re 2546: with a smooth pipe we interpolate and say so.
+    """PS-12 (companion notebook) reads a turbulent chart value at Re 2546; in a smooth pipe we interpolate and say so.
 
     The result lies between the laminar one, 272 kPa, and the printed 320 kPa.
     """
@@ -118,22 +131,53 @@ def test_flow_between_laminar_and_turbulent_is_said(tmp_path):
     assert made.at("L-1/f") < STRESS * case["phi"]
 
 
-@pytest.mark.parametrize("rough", [True, False], ids=["PS-07-notebook", "PS-05-quoted"])
-def test_the_other_way_round(rough, tmp_path):
-    """PS-07 with the printed level instead of the flow gives the flow; PS-05 with real roughness 4 to 6 % less flow."""
-    case = published_case("PS-07" if rough else "PS-05")
-    if not rough:
-        fixed = work_out("PS-05", tmp_path / "fixed")["flow"]
-        made = systems_unpumped.drain(case, roughness="0.0457 mm").computed(tmp_path / "rough")
-        assert 0.94 < made.at("L-1/Q") / fixed < 0.96
-        return
+def test_a_real_roughness_gives_less_flow_than_the_fully_turbulent_factor(tmp_path):
+    """PS-05 (quoted): clean steel at the actual Reynolds number passes 4 to 6 % less (our recomputation)."""
+    fixed = work_out("PS-05", tmp_path / "fixed")["flow"]
+    made = systems_unpumped.drain(published_case("PS-05"), roughness="0.0457 mm").computed(tmp_path / "rough")
+    assert 0.94 < made.at("L-1/Q") / fixed < 0.96
+
+
+def test_printed_level_gives_the_stated_flow(tmp_path):
+    """PS-07 (companion notebook) the other way round: a tank at the printed level, the flow found."""
+    case = published_case("PS-07")
     k = {name: stated(case, f"K_{name}") for name in ("entrance", "two_elbows", "valve", "exit")}
-    pipe = line("T-1", "T-2", stated(case, "diameter"), stated(case, "length"), roughness=stated(case, "roughness"), k=k)
+    pipe = line("T-1", "T-2", stated(case, "diameter"), stated(case, "length"), roughness=stated(case, "roughness"),
+                k=k)  # fmt: skip
     made = Sketch(
         nodes={"T-1": tank(case.expected["elevation_1"]), "T-2": tank(stated(case, "elevation_2"))},
         lines={"L-1": pipe}, liquid=liquid(stated(case, "density"), stated(case, "viscosity")),
     ).computed(tmp_path)
     assert made.at("L-1/Q") == pytest.approx(case["flow"], rel=0.0025)  # half of the tolerance on the head
+
+
+def test_suction_of_a_pump_whose_flow_a_demand_sets(tmp_path):
+    """NP-05 (companion notebook) with the 3 L/s drawn at a junction and nothing beyond: no system curve, same NPSHA."""
+    case = published_case("NP-05")
+    sketch = systems_npsh.suction(
+        case, level="0 m", air=stated(case, "atmospheric_pressure"), bore=stated(case, "diameter"),
+        fluid=liquid(stated(case, "density"), vapour=stated(case, "vapour_pressure", "absolute")),
+    )  # fmt: skip
+    sketch.nodes["N-2"] = junction(demand=stated(case, "flow"))
+    tall = pump_through(2 * case["flow"], 60.0, 0.7, elevation=stated(case, "lift"))
+    made = replace(sketch, flow=None, pumps={PUMP: tall}).computed(tmp_path)
+    assert made.at(f"{PUMP}/Q") == pytest.approx(case["flow"], rel=1e-9)
+    assert near(made.at(f"{PUMP}/NPSHA"), case.expected["NPSHA"], 0.012)
+    assert made.at(f"{PUMP}/H_sys") == pytest.approx(made.at(f"{PUMP}/H"), rel=1e-9)
+    assert f"curve/system/{PUMP}@1" not in made.outcome.job.ledger
+
+
+def test_pumps_in_series_leave_the_shut_off_pressure_open(tmp_path):
+    """OP-09 (memory), two in a row: no free surface feeds the second, so its greatest pressure is not judged."""
+    work_out("OP-09", tmp_path)
+    made = Computed(build.check(tmp_path / "series", lambda step: None))
+    assert made.verdict("pressure/P-2") == "not checked"
+    assert "P-2/p_max" not in made.outcome.job.ledger and f"{PUMP}/p_max" in made.outcome.job.ledger
+    between = made.head("P-2.suction")
+    assert between == pytest.approx(made.at(f"{PUMP}/H") - made.at("L-1/h_L") - made.at("L-3/h_L"), abs=1e-6)
+    column = made("liquid/rho@normal") * made("site/g")
+    assert made.at("P-2/p_s") == pytest.approx(column * (between - made.at("L-3/h_v")), rel=1e-6)
+    assert made.at("P-2/H_sys") == pytest.approx(made.at("P-2/H"), rel=1e-9)
 
 
 @pytest.mark.skipif(shutil.which("pdftotext") is None, reason="pdftotext is not installed")

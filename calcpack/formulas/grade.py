@@ -38,3 +38,21 @@ AXIS_MARGIN = formula(
     m="head", z_h="elevation", z="elevation",
     source="DEFINITION", note="below zero the pressure is below atmospheric",
 )
+
+NODE_PRESSURE = formula(
+    "grade.node_pressure", "Gauge pressure at a node", "p = rho * g * (H - z)",
+    p="gauge_pressure", rho="density", g="acceleration", H="head", z="elevation",
+    source="BERNOULLI", note="velocity head not deducted: the pressure of liquid brought to rest",
+)
+
+NODE_BALANCE = formula(
+    "grade.node_balance", "Flow that is left over at a node", "dQ = sum(Q_in) - sum(Q_out)",
+    dQ="flow", Q_in="flow[]", Q_out="flow[]",
+    source="CONTINUITY",
+)
+
+LOOP_BALANCE = formula(
+    "grade.loop_balance", "Head that is left over around a loop", "dH = sum(h_a) - sum(h_b)",
+    dH="head", h_a="head[]", h_b="head[]",
+    source="BERNOULLI", note="heads gained and lost in going round once",
+)

@@ -16,7 +16,7 @@ from calcpack.report.claims import claims
 from calcpack.sheets.content import Block, Derivation, Figure, Section, Sheet, Table, Verdicts
 
 REFERENCES = "references"  # key of the sheet whose tables list the sources, key first
-FEW = 8  # a longer list of places is drawn together to sections, then to sheets
+FEW = 4  # places listed one by one; more are drawn together by section, then by sheet
 
 
 @dataclass(frozen=True)

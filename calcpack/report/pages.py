@@ -79,7 +79,7 @@ def render_html(package: PackageContent, ledger: Ledger, figures: dict[str, str]
 def render_sheet(sheet: Sheet, desk: Desk) -> Html:
     """One sheet as a piece of HTML that stands alone apart from its links."""
     view = views.SheetView(
-        sheet_anchor(sheet.key), desk.numbering.sheets[sheet.key], sheet.title,
+        sheet_anchor(sheet.key), desk.numbering.sheets[sheet.key], sheet.title, f"of-{sheet.key.replace('_', '-')}",
         tuple(_section(section, desk) for section in sheet.sections),
     )
     return _fill(view, f"sheets/{sheet.key}.html")

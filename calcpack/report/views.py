@@ -158,11 +158,12 @@ class SectionView:
 
 @dataclass(frozen=True)
 class SheetView:
-    """A calculation sheet."""
+    """A calculation sheet. ``style`` is its key as a class name, so that the style sheet can name it."""
 
     anchor: str
     number: str
     title: str
+    style: str
     sections: tuple[SectionView, ...]
 
 
