@@ -1,7 +1,7 @@
 """Published problems of whole systems, computed end to end through project folders of YAML files.
 
 Every case names its source and how far that was seen in ``tests/published``; the test ids repeat the kind of evidence,
-and a miss prints the source. The cases are worked out in ``systems_pumped``, ``systems_unpumped`` and ``systems_npsh``.
+and a miss prints the source. The cases are worked out in ``systems_*.py``.
 """
 
 import shutil
@@ -10,7 +10,8 @@ from dataclasses import replace
 from pathlib import Path
 
 import pytest
-import systems_npsh  # importing them fills SYSTEMS
+import systems_duty_points  # importing them fills SYSTEMS
+import systems_npsh
 import systems_unpumped
 from published_cases import published, si
 from system_projects import (
@@ -67,7 +68,7 @@ def test_enough_systems_are_compared():
     assert kinds.count("PS") >= 17 and kinds.count("NP") >= 9 and kinds.count("NW") >= 8
     assert set(published("systems")) <= {*SYSTEMS, "PS-31"}
     assert {solver.__module__ for solver in SYSTEMS.values()} == {
-        "systems_pumped", systems_unpumped.__name__, systems_npsh.__name__
+        "systems_pumped", *(one.__name__ for one in (systems_unpumped, systems_npsh, systems_duty_points))
     }
 
 

@@ -15,7 +15,6 @@ def fill(job: Job) -> Sheet:
     identity: list[Block] = [
         Prose("The same input files and the same program give the same numbers and the same file."),
         Facts((*((name, text) for name, text in job.program.items()), ("fingerprint", fingerprint(job)))),
-        Facts(tuple((f"SHA-256 of {file.name}", file.sha256) for file in files)),
     ]
     return Sheet("appendix", "Appendix: inputs as read and program identity", (
         Section("appendix-program", "Program and fingerprint", tuple(identity)),
