@@ -41,10 +41,23 @@ def _labels(job: Job) -> SchematicLabels:
             tag: {name: f"{tag}/z@{name}" for name in node.levels if f"{tag}/z@{name}" in job.ledger}
             for tag, node in system.nodes.items() if node.kind == TANK and node.levels
         },
+        crest_entries=_crests(job, case),
         pump_entries={
             tag: _booked(job, f"{tag}/z", f"{tag}/Q@{case.id}", f"{tag}/H@{case.id}") for tag in system.pumps
         },
     )
+
+
+def _crests(job: Job, case: Case) -> dict[str, str]:
+    """The highest profile point of each line that rises above both its ends."""
+    crests = {}
+    for tag, line in case.system.lines.items():
+        heights = [point.elevation.si for point in line.profile]
+        if heights and max(heights) > max(heights[0], heights[-1]):
+            entry = f"{tag}/point-{heights.index(max(heights)) + 1}/z"
+            if entry in job.ledger:
+                crests[tag] = entry
+    return crests
 
 
 def _booked(job: Job, *ids: str) -> tuple[str, ...]:

@@ -96,8 +96,9 @@ def test_open_items(larkmere):
 
 
 def test_a_count_must_not_change_after_it_was_printed(larkmere):
-    with pytest.raises(LedgerError, match="counted 30, now 31"):
-        registers.count(larkmere.job, "count/criteria", 31, "")
+    counted = round(larkmere.job.ledger["count/criteria"].value)
+    with pytest.raises(LedgerError, match=f"counted {counted}, now {counted + 1}"):
+        registers.count(larkmere.job, "count/criteria", counted + 1, "")
 
 
 def test_unseen_sources_are_marked(larkmere):

@@ -1,7 +1,7 @@
 """Demo 1 against figures computed independently with scipy, IAPWS-97 and fluids (not with this program).
 
 Conventions of that computation: g = 9.80665 m/s2, Darcy-Weisbach with Colebrook-White, K = n fT, total heads. Its
-tolerances: flow and head 0.3 %, efficiency 0.5 %, power 0.7 %, NPSHA 0.05 m, pressure 2 kPa. Bores there were 154.05 and
+Conventions of that computation: g = 9.80665 m/s2, Darcy-Weisbach with Colebrook-White, K = n fT, total heads. Its
 202.72 mm (from inch sizes); the metric sizes of the standard give 154.08 and 202.74 mm.
 """
 

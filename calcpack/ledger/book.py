@@ -9,6 +9,7 @@ from collections.abc import Iterable, Iterator, Sequence
 from calcpack.digits import DEFAULT_DIGITS, MAX_DIGITS, digits_written, round_significant
 from calcpack.errors import LedgerError
 from calcpack.formulas import FORMULAS, Formula
+from calcpack.formulas.expression import magnitude
 from calcpack.formulas.formula import LIST
 from calcpack.ledger import entry as origin
 from calcpack.ledger.entry import Citation, Entry
@@ -17,6 +18,7 @@ from calcpack.values import LOOKED_UP, SUPPLIED, Value
 
 _WITHOUT_VALUE = (origin.CHOSEN, origin.SERIES, origin.CHECK)
 _ORIGIN_OF_STATUS = {SUPPLIED: origin.ASSUMED, LOOKED_UP: origin.LOOKED_UP}
+NOISE = 1e-13  # share of the terms of a difference that floating-point arithmetic leaves over
 Operand = Entry | str | Sequence[Entry | str]
 _NUMBER = re.compile(r"[-+]?[0-9][0-9_ ]*\.?[0-9]*(?:[eE][-+]?[0-9]+)?|[-+]?\.[0-9]+")
 
@@ -89,6 +91,8 @@ class Ledger:
         """
         ids, values = self._resolve(formula, operands)
         result = float(formula.evaluate(**values))
+        if not formula.is_empirical and abs(result) <= NOISE * magnitude(formula.equation.right, values):
+            result = 0.0  # equal terms: what is left is the noise of the arithmetic
         findings = self._findings(formula, {**values, formula.result: result})
         return self._book(
             Entry(

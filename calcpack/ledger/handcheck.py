@@ -8,13 +8,12 @@ from dataclasses import dataclass
 from calcpack.digits import DEFAULT_DIGITS, MAX_DIGITS, exponent_of, last_digit, round_significant
 from calcpack.formulas import Formula
 from calcpack.formulas.formula import LIST
-from calcpack.ledger.book import Ledger, formula_of
+from calcpack.ledger.book import NOISE, Ledger, formula_of
 from calcpack.ledger.entry import APPLIED, SOLVED, Entry
 from calcpack.quantities import KINDS, UNITS, Unit
 
 TOLERANCE = 0.002  # relative; the other bound is one unit in the last printed digit
 NINE_DIGITS = 10.0 ** (1 - MAX_DIGITS)  # share of the largest term that printing can resolve at most
-NOISE = 1e-13  # share of the largest term that floating-point arithmetic leaves
 WITHOUT_RESULT = 1e9  # deviation of a line whose printed numbers give no result; finite, so that it can be printed
 
 

@@ -17,6 +17,7 @@ from calcpack.sheets import (
     line_losses,
     line_sizing,
     liquid,
+    network,
     npsh,
     power,
     pressures,
@@ -50,6 +51,7 @@ CALCULATION = (
     pressures,
     grade_line,
     surge,
+    network,
     verification,  # runs the hand-check: nothing after it applies a formula
     schematic,
     cases,
@@ -70,6 +72,7 @@ PRINTING = (
     "flow_basis",
     "line_sizing",
     "line_losses",
+    "network",
     "total_head",
     "pump_curve",
     "system_curve",

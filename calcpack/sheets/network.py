@@ -15,7 +15,7 @@ from calcpack.sheets.total_head import end_head
 
 @dataclass(frozen=True)
 class Link:
-    """A line or a pump between two nodes: its head, whether it is a gain, and whether the flow goes from start to end."""
+    """A line or pump between two nodes: its head, whether it is a gain, whether the flow goes from start to end."""
 
     tag: str
     start: str
@@ -29,7 +29,7 @@ def fill(job: Job) -> Sheet:
     """Book what is left over at nodes and around loops. A single line of pipes needs no such sheet."""
     system = job.project.system
     if not _branches(job):
-        return Sheet("network", "Network", omitted="every node joins two lines only: the flow is the same along the path")
+        return Sheet("network", "Network", omitted="no node joins more than two lines: one flow along each path")
     cases = [case for case in job.cases if job.solved(case).convergence.converged]
     normal = next((case for case in cases if case.id == job.project.normal_case), cases[0])
     inner = [tag for tag, node in system.nodes.items() if node.kind in (JUNCTION, PUMP_PORT)]
@@ -128,7 +128,9 @@ def _loops(job: Job, cases: list[Case]) -> list[Section]:
             if not gains or not losses:
                 continue
             formula = grade.LOOP_BALANCE
-            left = float(formula.evaluate(h_a=[one.head.value for one in gains], h_b=[one.head.value for one in losses]))
+            left = float(formula.evaluate(
+                h_a=[one.head.value for one in gains], h_b=[one.head.value for one in losses]
+            ))
             entry = job.ledger.found(
                 f"loop-{number}/dH@{case.id}", left, "dH", f"Loop {number}: {formula.title.lower()}", "head",
                 source=formula.source, residual=0.0, case=case.id, digits=2,
@@ -136,8 +138,8 @@ def _loops(job: Job, cases: list[Case]) -> list[Section]:
             )
             rows.append(Row((str(number), _heads(gains), _heads(losses), Ref(entry.id, "quantity"))))
         if rows:
-            columns = (Column("Loop", width=0.6), Column("Heads one way", width=3.6), Column("Heads the other way", width=3.6),
-                       Column("Left over", "dH", width=1.4))
+            columns = (Column("Loop", width=0.6), Column("Heads one way", width=3.6),
+                       Column("Heads the other way", width=3.6), Column("Left over", "dH", width=1.4))
             blocks.append(Table(f"Heads around the loops, case {case_label(case)}", columns, tuple(rows)))
     return [Section("network-loops", "Energy around the loops", tuple(blocks))] if blocks else []
 
