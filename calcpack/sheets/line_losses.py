@@ -7,7 +7,7 @@ from calcpack.ledger import Entry
 from calcpack.project.model import Case, Line
 from calcpack.sheets.content import Block, Column, Derivation, Prose, Ref, Row, Section, Sheet, Table
 from calcpack.sheets.job import Job, case_label, greatest
-from calcpack.values import Value
+from calcpack.values import CONFIRMED, LOOKED_UP, Value
 
 STILL = 1e-12  # m3/s: below this a line carries no flow
 
@@ -85,16 +85,19 @@ def _coefficients(job: Job, case: Case, line: Line, bore: Entry) -> Entry:
             coefficient.symbol = f"K_{position}"
         else:
             coefficient = job.input(coefficient_id, fitting.coefficient, f"K_{position}", fitting.title, case)
-        count = Value(float(fitting.count), "count", str(fitting.count), fitting.coefficient.source, status="confirmed")
+        count = Value(float(fitting.count), "count", str(fitting.count), fitting.coefficient.source, status=CONFIRMED)
         counts.append(job.input(f"{tag}/N_{position}", count, f"N_{position}", f"Number of {fitting.title}", case))
         coefficients.append(coefficient)
-    return job.once(f"{tag}/K", fittings.SUM_K, case, n=counts, K_i=coefficients)
+    if coefficients:
+        return job.once(f"{tag}/K", fittings.SUM_K, case, n=counts, K_i=coefficients)
+    none = Value(0.0, "loss_coefficient", "0", source="DEFINITION", locator="no fitting in the line", status=LOOKED_UP)
+    return job.input(f"{tag}/K", none, "K", "Sum of loss coefficients", case)
 
 
 def fully_turbulent_roughness(job: Job) -> Entry:
     """Roughness of clean commercial steel, on which the fitting factors are based whatever the pipe."""
     value = Value(
-        0.0457e-3, "roughness", "0.0457 mm", source="TP410", locator="basis of the factor f_T", status="looked up"
+        0.0457e-3, "roughness", "0.0457 mm", source="TP410", locator="basis of the factor f_T", status=LOOKED_UP
     )
     return job.input("fittings/eps_T", value, "eps_T", "Roughness of clean steel (fittings)")
 
@@ -148,7 +151,7 @@ def _section(job: Job, line: Line) -> Section:
     case = job.project.case(governing.case)
     blocks: tuple[Block, ...] = (
         Prose(f"Derived in full for the case of the greatest loss of this line: case {case_label(case)}."),
-        _fittings_table(job, line),
+        *([_fittings_table(job, line)] if line.fittings else []),
         Derivation(_derived_ids(job, line, case), governing=(governing.id,)),
         _cases_table(job, line, flowing, case),
     )
