@@ -86,11 +86,24 @@ DROP_OF_HEAD = formula(
     source="HYDROSTATICS", locator="also HI data book eq. 1.A.1",
 )
 
+HEAD_OF_DROP = formula(
+    "valves.head_of_drop", "Head of a pressure drop", "h_r = dp / (rho * g)",
+    h_r="head", dp="pressure_difference", rho="density", g="acceleration",
+    source="HYDROSTATICS", locator="also HI data book eq. 1.A.1", note="density of the liquid that the drop was stated for",
+)
+
 AUTHORITY = formula(
     "valves.authority", "Authority of a control valve", "N = dp_v / (dp_v + dp_r)",
     N="ratio", dp_v="pressure_difference", dp_r="pressure_difference",
     source="COMMON", locator="drop of the open valve over that of the whole controlled circuit",
     valid={"N": (0.0, 1.0)}, note="0.3 at least and 0.5 as a target are in use",
+)
+
+AUTHORITY_OF_BRANCH = formula(
+    "valves.authority_of_branch", "Authority of a control valve in its branch", "N = h_v / h_b",
+    N="fraction", h_v="head", h_b="head",
+    source="COMMON", locator="head lost in the open valve over that of its whole branch",
+    note="0.3 at least and 0.5 as a target are in use",
 )
 
 BALANCE_DROP = formula(

@@ -12,6 +12,7 @@ from calcpack.sheets import (
     basis,
     cases,
     cautions,
+    control_valves,
     flow_basis,
     grade_line,
     line_losses,
@@ -51,6 +52,7 @@ CALCULATION = (
     pressures,
     grade_line,
     surge,
+    control_valves,
     network,
     verification,  # runs the hand-check: nothing after it applies a formula
     schematic,
@@ -82,6 +84,7 @@ PRINTING = (
     "pressures",
     "grade_line",
     "surge",
+    "control_valves",
     "cases",
     "verification",
     "cautions",

@@ -6,6 +6,7 @@ from calcpack.formulas import fittings, pipe_flow
 from calcpack.ledger import Entry
 from calcpack.project.model import Case, Line
 from calcpack.sheets.content import Block, Column, Derivation, Prose, Ref, Row, Section, Sheet, Table
+from calcpack.sheets.equipment_losses import derived_ids, equipment_head, head_of
 from calcpack.sheets.job import Job, case_label, greatest
 from calcpack.values import CONFIRMED, LOOKED_UP, Value
 
@@ -49,7 +50,7 @@ def book_line(job: Job, case: Case, line: Line) -> Entry:
         f"{tag}/h_m@{case.id}", fittings.LOCAL_HEAD, case=case.id, K=total_k, V=velocity, g=job.gravity()
     )
     ledger.apply(f"{tag}/J@{case.id}", pipe_flow.GRADIENT, case=case.id, h_f=friction, L=length)
-    items = [_equipment(job, case, item, q) for item in line.equipment]
+    items = [equipment_head(job, case, item, q) for item in line.equipment]
     if not items:
         return ledger.apply(f"{tag}/h_L@{case.id}", fittings.LINE_HEAD_PIPE, case=case.id, h_f=friction, h_m=local)
     equipment = items[0]
@@ -129,19 +130,6 @@ def _friction_factor(job: Job, case: Case, line: Line, bore: Entry, velocity: En
     return ledger.apply(key, formula, case=case.id, Re=reynolds, **bounds)
 
 
-def _equipment(job: Job, case: Case, tag: str, flow: Entry) -> Entry:
-    item = case.system.equipment[tag]
-    state = item.states[case.equipment[tag]]
-    head = job.input(f"{tag}/h_r@{state.name}", state.head, "h_r", f"{item.description}, {state.name}: head loss", case)
-    if state.law == "fixed":
-        return head
-    rated = job.input(f"{tag}/Q_r@{state.name}", state.flow, "Q_r", f"{item.description}, {state.name}: at flow", case)
-    return job.ledger.apply(
-        f"{tag}/h_e@{case.id}", fittings.EQUIPMENT_QUADRATIC, case=case.id,
-        title=f"Head loss of {tag}, {state.name}", h_r=head, Q=flow, Q_r=rated,
-    )
-
-
 def _section(job: Job, line: Line) -> Section:
     tag, flowing = line.tag, [case for case in job.cases if f"{line.tag}/V@{case.id}" in job.ledger]
     title = f"{tag} {line.description}"
@@ -164,7 +152,7 @@ def _derived_ids(job: Job, line: Line, case: Case) -> tuple[str, ...]:
     wanted += [f"h_f@{case.id}", f"J@{case.id}", f"h_m@{case.id}"]
     ids = [job.at(f"{tag}/{symbol}", case).id for symbol in wanted if f"{tag}/{symbol}" in job.ledger]
     ids = [entry for entry in ids if job.ledger[entry].formula]
-    ids += [f"{item}/h_e@{case.id}" for item in line.equipment if f"{item}/h_e@{case.id}" in job.ledger]
+    ids += [entry_id for item in line.equipment for entry_id in derived_ids(job, case, item)]
     return (*ids, f"{tag}/h_L@{case.id}")
 
 
@@ -204,12 +192,7 @@ def _cases_table(job: Job, line: Line, cases: list[Case], governing: Case) -> Ta
     for case in cases:
         cells = [case_label(case)]
         cells += [Ref(job.at(f"{tag}/{symbol}", case).id) for _, symbol, _ in names]
-        cells += [_equipment_ref(job, case, item) for item in line.equipment]
+        cells += [Ref(head_of(job, case, item).id) for item in line.equipment]
         cells.append(Ref(f"{tag}/h_L@{case.id}"))
         rows.append(Row(tuple(cells), mark="in full above" if case is governing else ""))
     return Table(f"{tag}: all cases", tuple(columns), tuple(rows))
-
-
-def _equipment_ref(job: Job, case: Case, item: str) -> Ref:
-    own = f"{item}/h_e@{case.id}"
-    return Ref(own if own in job.ledger else job.at(f"{item}/h_r@{case.equipment[item]}", case).id)

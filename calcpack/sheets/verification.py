@@ -84,8 +84,8 @@ def _second(job: Job) -> list[Section]:
                Column("Head, curve against system", "d_H"))
     blocks: tuple[Block, ...] = (
         Prose(f"Second method: {next(iter(methods.values())).method}; it balances the energy round loops where the "
-              f"first one balances nodes. Second correlation: {SWAMEE_JAIN} in place of Colebrook-White. The last column "
-              "compares the head of the pump curve with the head that the sheets sum up along the path."),
+              f"first one balances nodes. Second correlation: {SWAMEE_JAIN} in place of Colebrook-White. The last "
+              "column compares the head of the pump curve with the head that the sheets sum up along the path."),
         Table("Flow by a second method and by a second correlation", columns, tuple(rows)),
     )
     return [Section("verification-second", "Second method and second correlation", blocks)]

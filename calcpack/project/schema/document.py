@@ -83,6 +83,8 @@ class LimitsInput(Sourced):
     )
     pressure_band: Band | None = Field(None, description="pressure below the rating from which a warning stands")
     velocity_band: Band | None = Field(None, description="velocity inside its limits from which a warning stands")
+    authority: Band | None = Field(None, description="least authority of a control valve, in % of the branch's drop")
+    authority_band: Band | None = Field(None, description="authority above that limit under which a warning stands")
     hot_liquid: Temperature | None = Field(None, description="temperature above which contact is cautioned against")
     cold_liquid: Temperature | None = Field(
         None, description="temperature at or below which frost is cautioned against"
