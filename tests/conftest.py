@@ -1,8 +1,15 @@
 """Fixtures that several test modules share: the demo project computed once."""
 
+import os
 from pathlib import Path
 
 import pytest
+from hypothesis import settings
+
+# The same examples on every run, so that a red run can be repeated; CALCPACK_EXPLORE=1 draws new ones.
+settings.register_profile("steady", derandomize=True, deadline=None)
+settings.register_profile("explore", deadline=None)
+settings.load_profile("explore" if os.environ.get("CALCPACK_EXPLORE") else "steady")
 
 ROOT = Path(__file__).parent.parent
 LARKMERE = ROOT / "projects" / "larkmere-transfer"

@@ -13,6 +13,12 @@ _DIAMETERS = {"D_1": "diameter", "D_2": "diameter"}
 _AFFINITY = {"source": "AFFINITY", "locator": "Hydraulic Institute data book eq. 1.B.6", "valid": AFFINITY_RANGE}
 _TRIM = {"source": "AFFINITY", "locator": "Hydraulic Institute data book eq. 1.B.7", "valid": TRIM_RANGE}
 
+SPEED = formula(
+    "speed.speed", "Speed", "n = s * n_0",
+    n="rotational_speed", s="fraction", n_0="rotational_speed",
+    source="DEFINITION", locator="share of the speed of the curve",
+)
+
 HEAD_CURVE = formula(
     "speed.head_curve", "Head from the fitted curve, at another speed",
     "H = a_0 * (n / n_0)**2 + a_1 * (n / n_0) * Q + a_2 * Q**2",

@@ -52,21 +52,20 @@ def review(
     new, stranded = state.copy(), np.zeros(net.demand.shape, dtype=bool)
     for block in np.flatnonzero((backwards | forwards | reverse).any(axis=0)):
         opening = forwards[:, block].astype(np.int8) - reverse[:, block]
-        if opening.any() and rounds[block] >= ONE_AT_A_TIME:
-            first = int(np.flatnonzero(opening)[0])
-            new[first, block] = opening[first]
-            continue
-        new[:, block] += opening
         shutting = np.flatnonzero(backwards[:, block])
-        kept, alone = _keep_one_way_out(net, block, present[:, block] & (new[:, block] != 0), shutting)
-        two_way = kept[~single[kept, block]]
-        new[two_way, block] *= -1
-        shut = np.setdiff1d(shutting, kept)
-        if len(shut) and rounds[block] >= ONE_AT_A_TIME:
-            shut = shut[:1]
-        new[shut, block] = 0
-        if np.array_equal(new[:, block], state[:, block]):
-            stranded[:, block] = alone
+        single_change = rounds[block] >= ONE_AT_A_TIME
+        wanted = state[:, block] + (0 if single_change else opening)
+        kept, alone = _keep_one_way_out(net, block, present[:, block] & (wanted != 0), shutting)
+        wanted[np.setdiff1d(shutting, kept)] = 0
+        if single_change:
+            wanted += opening
+            changes = np.flatnonzero(wanted != state[:, block])[:1]
+            wanted = np.where(np.isin(np.arange(len(wanted)), changes), wanted, state[:, block])
+        if np.array_equal(wanted, state[:, block]):  # what must stay open turns, or cannot be served
+            two_way = kept[~single[kept, block]]
+            wanted[two_way] *= -1
+            stranded[:, block] = alone & (len(two_way) == 0)
+        new[:, block] = wanted
     return new, stranded
 
 

@@ -9,7 +9,7 @@ from calcpack.project.model import Case, Motor, Pump
 from calcpack.sheets.content import Block, Column, Derivation, Prose, Ref, Row, Section, Sheet, Table, Verdicts
 from calcpack.sheets.criteria import AT_LEAST, judge
 from calcpack.sheets.job import Job, case_label, greatest
-from calcpack.sheets.pump_curve import value_at
+from calcpack.sheets.pump_at_case import value_at
 
 END = "end of curve"
 
@@ -83,8 +83,8 @@ def _end_of_curve(job: Job, pump: Pump, cases: list[Case]) -> list[str]:
     tag, ledger = pump.tag, job.ledger
     flow = ledger[f"{tag}/Q_{len(pump.curve.flow)}"]
     densest = max(cases, key=lambda case: job.density(case).value)
-    head = value_at(job, pump, "H", flow, "", f"{tag}/H_end")
-    efficiency = value_at(job, pump, "eta", flow, "", f"{tag}/eta_end")
+    head = value_at(job, pump, "H", flow, f"{tag}/H_end")
+    efficiency = value_at(job, pump, "eta", flow, f"{tag}/eta_end")
     head.symbol, efficiency.symbol = "H_end", "eta_end"
     head.title, efficiency.title = f"Head, {END}", f"Efficiency, {END}"
     hydraulic = ledger.apply(f"{tag}/P_h_end", formulas.HYDRAULIC_POWER, title=f"Power given to the liquid, {END}",

@@ -11,7 +11,7 @@ from calcpack.sheets.content import Block, Column, Derivation, Prose, Ref, Row, 
 from calcpack.sheets.criteria import AT_LEAST, AT_MOST, house_limit, judge
 from calcpack.sheets.job import Job, case_label, least
 from calcpack.sheets.path import at_rest, pump_path
-from calcpack.sheets.pump_curve import value_at
+from calcpack.sheets.pump_at_case import value_at
 from calcpack.sheets.total_head import end_head
 from calcpack.values import LOOKED_UP, Value
 
@@ -122,7 +122,7 @@ def _shut_off(job: Job, pump: Pump, cases: list[Case]) -> Section:
         check = ledger.not_decided(f"check/pressure/{tag}", f"{tag}: greatest pressure against the ratings",
                                    NOT_CHECKED, f"the suction pressure without flow is not known: {moving} feeds it")
         return Section(f"shut-off-{tag}", f"{tag}: pressure at shut-off", (Verdicts((check.id,)),))
-    highest = value_at(job, pump, "H", ledger[f"{tag}/Q_{_highest_point(pump)}"], "", f"{tag}/H_0")
+    highest = value_at(job, pump, "H", ledger[f"{tag}/Q_{_highest_point(pump)}"], f"{tag}/H_0")
     highest.symbol, highest.title = "H_0", "Highest head of the curve"
     case = max(cases, key=lambda one: end_head(job, one, pump_path(one, job.solved(one), pump).source).value)
     densest = max(cases, key=lambda one: job.density(one).value)

@@ -4,10 +4,10 @@ from __future__ import annotations
 
 from calcpack.formulas import pump as formulas
 from calcpack.hydraulics.curves import POLYNOMIAL, FittedCurve, PumpCurves
-from calcpack.ledger import Entry
 from calcpack.project.model import Pump
 from calcpack.sheets.content import Block, Column, Derivation, Facts, Prose, Ref, Row, Section, Sheet, Table
 from calcpack.sheets.job import Job
+from calcpack.sheets.pump_at_case import COEFFICIENTS, FORMULA, value_at
 from calcpack.values import CONFIRMED, Value
 
 COLUMNS = (
@@ -16,34 +16,12 @@ COLUMNS = (
     ("eta", "efficiency", "Efficiency", "efficiency"),
     ("NPSHR", "npshr", "NPSHR", "head"),
 )
-COEFFICIENTS = {
-    "H": ("Head", (("a_0", 0), ("a_1", 1), ("a_2", 2))),
-    "eta": ("Efficiency", (("b_1", 1), ("b_2", 2), ("b_3", 3))),
-    "NPSHR": ("NPSHR", (("c_0", 0), ("c_2", 2))),
-}  # symbol and power of each term of the fitted polynomial
-FORMULA = {"H": formulas.HEAD_CURVE, "eta": formulas.EFFICIENCY_CURVE, "NPSHR": formulas.NPSHR_CURVE}
-
-
 def fill(job: Job) -> Sheet:
     """Book points, fit coefficients and specific speeds of every pump."""
     sections = tuple(_section(job, pump) for pump in job.project.system.pumps.values())
     if not sections:
         return Sheet("pump_curve", "Pump data", omitted="the project has no pump")
     return Sheet("pump_curve", "Pump data", sections)
-
-
-def value_at(job: Job, pump: Pump, symbol: str, flow: Entry, case: str, entry_id: str) -> Entry:
-    """Book head, efficiency or NPSHR ('H', 'eta', 'NPSHR') of one pump at ``flow`` from its fitted curve."""
-    fit: FittedCurve = getattr(job.fits[pump.tag], {"H": "head", "eta": "efficiency", "NPSHR": "npshr"}[symbol])
-    title, names = COEFFICIENTS[symbol]
-    if fit.kind == POLYNOMIAL:
-        coefficients = {name: f"{pump.tag}/{name}" for name, _ in names}
-        return job.ledger.apply(entry_id, FORMULA[symbol], case=case, Q=flow, **coefficients)
-    return job.ledger.found(
-        entry_id, float(fit.value(flow.value)), symbol, f"{title} between the maker's points", FORMULA[symbol].kind,
-        source="COMMON", locator="monotone cubic interpolation", residual=fit.residual, case=case,
-        operands={"Q": flow.id},
-    )
 
 
 def _section(job: Job, pump: Pump) -> Section:
@@ -129,17 +107,17 @@ def _speeds(job: Job, pump: Pump, fit: PumpCurves) -> list[Block]:
     best = ledger[f"{tag}/Q_BEP"]
     if not fit.head.flow_min <= best.value <= fit.head.flow_max:
         return [Prose("The flow at best efficiency lies outside the curve data: specific speeds are not computed.")]
-    head = value_at(job, pump, "H", best, "", f"{tag}/H_BEP")
+    head = value_at(job, pump, "H", best, f"{tag}/H_BEP")
     head.symbol, head.title = "H_BEP", "Head at best efficiency"
     ids, stage = [head.id], head
     if pump.stages > 1:
         stages = Value(float(pump.stages), "count", str(pump.stages), source=pump.curve.source, status=CONFIRMED)
         number = job.input(f"{tag}/i", stages, "i", f"{tag}: number of stages")
-        stage = ledger.apply(f"{tag}/H_1", formulas.STAGE_HEAD, H=head, i=number)
+        stage = ledger.apply(f"{tag}/H_stage", formulas.STAGE_HEAD, H=head, i=number)
         ids.append(stage.id)
     ids.append(ledger.apply(f"{tag}/n_s", formulas.SPECIFIC_SPEED, n=f"{tag}/n", Q=best, H=stage).id)
     if fit.npshr is not None:
-        required = value_at(job, pump, "NPSHR", best, "", f"{tag}/NPSHR_BEP")
+        required = value_at(job, pump, "NPSHR", best, f"{tag}/NPSHR_BEP")
         required.symbol, required.title = "NPSHR_BEP", "NPSHR at best efficiency"
         suction = ledger.apply(f"{tag}/S", formulas.SUCTION_SPECIFIC_SPEED, n=f"{tag}/n", Q=best, NPSHR=required)
         ids += [required.id, suction.id]

@@ -10,7 +10,7 @@ from calcpack.sheets.content import Block, Column, Derivation, Prose, Ref, Row, 
 from calcpack.sheets.criteria import AT_LEAST, AT_MOST, house_limit, judge
 from calcpack.sheets.flow_basis import required_flow
 from calcpack.sheets.job import Job, case_label
-from calcpack.sheets.pump_curve import value_at
+from calcpack.sheets.pump_at_case import best_flow, case_value_at, end_flow, speed_ratio
 from calcpack.values import CONFIRMED, LOOKED_UP, Value
 
 
@@ -51,7 +51,9 @@ def _duty_exists(job: Job, pump: Pump, running: list[Case], duties: list[Case]) 
 def _book(job: Job, case: Case, pump: Pump) -> bool:
     tag, duty = pump.tag, job.solved(case).pumps[pump.tag]
     fit = job.fits[tag]
-    if not duty.running or not fit.head.flow_min <= duty.flow_each <= fit.head.flow_max or duty.flow_each <= 0:
+    ratio = speed_ratio(job, case, pump)
+    within = ratio * fit.head.flow_min <= duty.flow_each <= ratio * fit.head.flow_max
+    if not duty.running or not within or duty.flow_each <= 0:
         return False
     flow = job.ledger.found(
         f"{tag}/Q@{case.id}", duty.flow, "Q", f"{tag}: flow of the running units", "flow", source="CONTINUITY",
@@ -67,12 +69,12 @@ def _book(job: Job, case: Case, pump: Pump) -> bool:
             f"{tag}/Q_1@{case.id}", duty.flow_each, "Q_1", f"{tag}: flow of one unit", "flow", source="CONTINUITY",
             locator="one unit runs", residual=0.0, case=case.id, operands={"Q": flow.id},
         )
-    best = job.ledger[f"{tag}/Q_BEP"]
-    value_at(job, pump, "H", each, case.id, f"{tag}/H@{case.id}")
+    best = best_flow(job, pump, case)
+    case_value_at(job, pump, "H", each, case)
     if fit.efficiency is not None:
-        value_at(job, pump, "eta", each, case.id, f"{tag}/eta@{case.id}")
+        case_value_at(job, pump, "eta", each, case)
     if fit.npshr is not None:
-        value_at(job, pump, "NPSHR", each, case.id, f"{tag}/NPSHR@{case.id}")
+        case_value_at(job, pump, "NPSHR", each, case)
     job.ledger.apply(f"{tag}/r@{case.id}", formulas.PERCENT_BEP, case=case.id, Q=each, Q_BEP=best)
     difference(job, f"{tag}/closure@{case.id}", "d_H", "Head of the pump against head of the system",
                own=job.ledger[f"{tag}/H_sys@{case.id}"], other=job.ledger[f"{tag}/H@{case.id}"])
@@ -85,7 +87,7 @@ def _judge(job: Job, pump: Pump, cases: list[Case]) -> tuple[str, ...]:
     each = [ledger[f"{tag}/Q_1@{case.id}"] for case in cases]
     ratios = [ledger[f"{tag}/r@{case.id}"] for case in cases]
     checks = [*_capacity(job, pump, flows)]
-    last = ledger[f"{tag}/Q_{len(pump.curve.flow)}"]
+    last = [end_flow(job, pump, case) for case in cases]
     near_end = house_limit(job, "curve_end_band", "fraction", "5 %", 0.05, "End of curve: warning band")
     checks.append(judge(job, f"end-of-curve/{tag}", f"{tag}: flow within the curve data", each, last, AT_MOST,
                         band=near_end))
@@ -149,6 +151,9 @@ def _section(job: Job, pump: Pump, cases: list[Case], checks: tuple[str, ...]) -
                if f"{tag}/{symbol}@{normal.id}" in job.ledger]
     derived = tuple(f"{tag}/{symbol}@{normal.id}" for symbol in symbols
                     if symbol != "Q_1" or job.ledger[f"{tag}/Q_1@{normal.id}"].formula)
+    at_case = ("n", "Q_BEP", "Q_end", "a_0", "a_1", "b_1", "b_2", "b_3", "c_0", "B", "C_Q", "C_HB", "C_eta")
+    derived = (*(entry_id for entry_id in (f"{tag}/{name}@{normal.id}" for name in at_case) if entry_id in job.ledger),
+               *derived)
     heads = {"Q": ("Flow", "flow"), "H": ("Head, curve", "head"), "eta": ("Efficiency", "efficiency"),
              "NPSHR": ("NPSHR", "head"), "r": ("Share of best-efficiency flow", "fraction")}
     shown = [symbol for symbol in heads if symbol in symbols]
