@@ -5,30 +5,51 @@ from __future__ import annotations
 import argparse
 import json
 import os
+import shlex
 import sys
 from collections.abc import Callable, Sequence
 from pathlib import Path
+from typing import TextIO
 
 from calcpack import __version__
-from calcpack.errors import CalcpackError, ProjectError
+from calcpack.errors import CalcpackError, Problem, ProjectError
 
 DONE, NOT_MET, REFUSED = 0, 1, 2
+STOPPED, NO_READER = 130, 141  # what a shell reports of a program that a signal ended
 
 
 def main(arguments: Sequence[str] | None = None) -> int:
-    """Run one command. Returns 0 done, 1 a criterion is not met, 2 bad input or refused."""
-    options = _parser().parse_args(arguments)
+    """Run one command. Returns 0 done, 1 a criterion is not met, 2 bad input or refused, 130 stopped by the user."""
+    for stream in (sys.stdout, sys.stderr):
+        stream.reconfigure(errors="backslashreplace")  # a terminal may lack characters, files never do
+    parser = _parser()
+    options = parser.parse_args(arguments)
+    if options.command is None:
+        parser.print_help(sys.stderr)
+        return REFUSED
     try:
-        return options.run(options)
-    except ProjectError as error:
+        status = options.run(options)
+        sys.stdout.flush()
+        return status
+    except KeyboardInterrupt:
+        print("calcpack: stopped", file=sys.stderr)
+        return STOPPED
+    except BrokenPipeError:  # the reader of our output went away
+        _drop_output()
+        return NO_READER
+    except CalcpackError as error:
         _report_problems(error, options)
         return REFUSED
-    except CalcpackError as error:
-        print(f"calcpack: {error}", file=sys.stderr)
+    except OSError as error:
+        if error.filename is None:  # our own output: a full disk
+            _drop_output()
+        print(f"calcpack: {error.filename or 'output'}: {error.strerror}", file=sys.stderr)
         return REFUSED
-    except BrokenPipeError:  # the reader of our output went away
-        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
-        return REFUSED
+
+
+def _drop_output() -> None:
+    """What is left in the buffer of the output goes nowhere, so that the interpreter does not try once more."""
+    os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
 
 
 def _parser() -> argparse.ArgumentParser:
@@ -37,28 +58,31 @@ def _parser() -> argparse.ArgumentParser:
         description="Turns a project folder of YAML inputs (levels, lines, fittings, pumps, cases) into solved "
         "hydraulics and one traceable calculation package.",
         epilog="Exit status: 0 done; 1 done, but a criterion is not met; 2 bad input or refused.",
+        allow_abbrev=False,
     )
     parser.add_argument("--version", action="version", version=f"calcpack {__version__}")
-    commands = parser.add_subparsers(dest="command", required=True, metavar="COMMAND")
+    commands = parser.add_subparsers(dest="command", metavar="COMMAND")
 
-    new = commands.add_parser("new", help="write a small, complete, commented project that builds")
-    new.add_argument("folder", type=Path, metavar="FOLDER")
-    new.set_defaults(run=_new)
+    new = _command(commands, "new", _new, "write a small, complete, commented project that builds")
+    new.add_argument("folder", type=Path, metavar="FOLDER", help="a new or empty folder")
 
-    check = commands.add_parser("check", help="read, validate and solve; print results, criteria and open items")
-    check.add_argument("folder", type=Path, metavar="FOLDER")
-    check.add_argument("--json", action="store_true", help="print the results as JSON")
-    check.set_defaults(run=_check)
+    check = _command(commands, "check", _check, "read, validate and solve; print results, criteria and open items")
+    check.add_argument("folder", type=Path, metavar="FOLDER", help="a project folder")
+    check.add_argument("--json", action="store_true", help="print results.json, or the problems, as JSON")
 
-    draft = commands.add_parser("draft", help="write the whole package as PDF, marked DRAFT, into FOLDER/build/")
-    draft.add_argument("folder", type=Path, metavar="FOLDER")
-    draft.add_argument("--json", action="store_true", help="print paths and verdict counts as JSON")
-    draft.set_defaults(run=_draft)
+    draft = _command(commands, "draft", _draft, "write the whole package as PDF, marked DRAFT, into FOLDER/build/")
+    draft.add_argument("folder", type=Path, metavar="FOLDER", help="a project folder")
+    draft.add_argument("--json", action="store_true", help="print paths and verdict counts, or the problems, as JSON")
 
-    schema = commands.add_parser("schema", help="print the JSON Schema of the input files")
+    schema = _command(commands, "schema", _schema, "print the JSON Schema of the input files")
     schema.add_argument("--results", action="store_true", help="the schema of results.json instead")
-    schema.set_defaults(run=_schema)
     return parser
+
+
+def _command(commands, name: str, run: Callable[[argparse.Namespace], int], what: str) -> argparse.ArgumentParser:
+    command = commands.add_parser(name, help=what, description=f"{what[0].upper()}{what[1:]}.", allow_abbrev=False)
+    command.set_defaults(run=run)
+    return command
 
 
 def _new(options: argparse.Namespace) -> int:
@@ -66,7 +90,7 @@ def _new(options: argparse.Namespace) -> int:
 
     for path in write_starter(options.folder):
         print(path)
-    print(f"next: calcpack draft {options.folder}")
+    print(f"next: calcpack check {shlex.quote(str(options.folder))}")
     return DONE
 
 
@@ -75,32 +99,48 @@ def _check(options: argparse.Namespace) -> int:
 
     outcome = build.check(options.folder, _progress())
     if options.json:
-        sys.stdout.write(build.results_text(outcome))
+        _print_json(build.results_text(outcome))
     else:
         print(terminal.report(outcome.job, color=_color(sys.stdout)))
     return NOT_MET if outcome.not_met else DONE
 
 
 def _draft(options: argparse.Namespace) -> int:
-    from calcpack import build
+    from calcpack import build, terminal
+    from calcpack.ledger import entry
 
     outcome = build.draft(options.folder, _progress())
     if options.json:
-        print(json.dumps({"pdf": str(outcome.pdf), "results": str(outcome.results), "sheets": outcome.pages,
-                          "verdicts": outcome.verdicts, "fingerprint": outcome.fingerprint}))
+        _print_json(json.dumps({
+            "pdf": str(outcome.pdf), "results": str(outcome.results), "sheets": outcome.pages,
+            "verdicts": outcome.verdicts, "fingerprint": outcome.fingerprint,
+        }, ensure_ascii=False))
     else:
         print(f"{outcome.pdf}  ({outcome.pages} sheets)")
         print(outcome.results)
-        print(", ".join(f"{word}: {count}" for word, count in outcome.verdicts.items()))
+        print("; ".join(f"{word}: {count}" for word, count in outcome.verdicts.items()))
+        for line in terminal.criteria(outcome.job, entry.NOT_MET):
+            print(f"{entry.NOT_MET}: {line}")
     return NOT_MET if outcome.not_met else DONE
 
 
 def _schema(options: argparse.Namespace) -> int:
-    from calcpack.project import json_schema
-    from calcpack.results import RESULTS_SCHEMA
+    if options.results:
+        from calcpack.results import RESULTS_SCHEMA
 
-    print(json.dumps(RESULTS_SCHEMA if options.results else json_schema(), indent=2, ensure_ascii=False))
+        schema = RESULTS_SCHEMA
+    else:
+        from calcpack.project import json_schema
+
+        schema = json_schema()
+    _print_json(json.dumps(schema, indent=2, ensure_ascii=False))
     return DONE
+
+
+def _print_json(text: str) -> None:
+    """JSON is UTF-8 whatever the terminal is."""
+    sys.stdout.reconfigure(encoding="utf-8")
+    print(text.rstrip("\n"))
 
 
 def _progress() -> Callable[[str], None]:
@@ -110,19 +150,28 @@ def _progress() -> Callable[[str], None]:
     return lambda step: print(f"  {step}", file=sys.stderr, flush=True)
 
 
-def _color(stream) -> bool:
-    return stream.isatty() and not os.environ.get("NO_COLOR")
+def _color(stream: TextIO) -> bool:
+    return stream.isatty() and not os.environ.get("NO_COLOR") and os.environ.get("TERM") != "dumb"
 
 
-def _report_problems(error: ProjectError, options: argparse.Namespace) -> None:
+def _report_problems(error: CalcpackError, options: argparse.Namespace) -> None:
+    """Every problem as a line, or all as JSON; a problem of no file has an empty one."""
+    of_inputs = isinstance(error, ProjectError)
+    problems = error.problems if of_inputs else [Problem("", 0, "", line) for line in str(error).splitlines()]
     if getattr(options, "json", False):
         fields = ("file", "line", "where", "text", "hint")
-        print(json.dumps({"problems": [{name: getattr(one, name) for name in fields} for one in error.problems]}))
+        _print_json(json.dumps({"problems": [{name: getattr(one, name) for name in fields} for one in problems]}))
         return
-    for problem in error.problems:
-        print(problem, file=sys.stderr)
-    count = len(error.problems)
-    print(f"calcpack: {count} problem{'' if count == 1 else 's'}; nothing was written", file=sys.stderr)
+    for problem in problems:
+        print(_printable(str(problem)) if of_inputs else f"calcpack: {problem.text}", file=sys.stderr)
+    if of_inputs:
+        count = len(problems)
+        print(f"calcpack: {count} problem{'' if count == 1 else 's'}; nothing was written", file=sys.stderr)
+
+
+def _printable(text: str) -> str:
+    """Control characters of the inputs do not reach the terminal."""
+    return "".join(char if char.isprintable() or char.isspace() else "?" for char in text)
 
 
 if __name__ == "__main__":

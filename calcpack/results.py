@@ -273,8 +273,8 @@ def _entry(ledger: Ledger, entry: Entry) -> dict:
     text = display_text(entry, ledger.system) if entry.choice or math.isfinite(entry.value) else ""
     made = {
         "id": entry.id, "title": entry.title, "symbol": entry.symbol, "kind": entry.kind, "si": _finite(entry.value),
-        "si_unit": kind.si, "text": text, "unit": kind.display_unit(ledger.system).text, "origin": entry.origin, "case": entry.case,
-        "formula": entry.formula, "operands": {name: ids if isinstance(ids, str) else list(ids)
+        "si_unit": kind.si, "text": text, "unit": kind.display_unit(ledger.system).text, "origin": entry.origin,
+        "case": entry.case, "formula": entry.formula, "operands": {name: ids if isinstance(ids, str) else list(ids)
                                                for name, ids in (entry.operands or {}).items()},
         "source": _source(entry), "path": entry.path, "place": entry.place, "status": entry.status,
         "note": entry.choice or entry.note,

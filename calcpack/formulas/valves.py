@@ -89,7 +89,8 @@ DROP_OF_HEAD = formula(
 HEAD_OF_DROP = formula(
     "valves.head_of_drop", "Head of a pressure drop", "h_r = dp / (rho * g)",
     h_r="head", dp="pressure_difference", rho="density", g="acceleration",
-    source="HYDROSTATICS", locator="also HI data book eq. 1.A.1", note="density of the liquid that the drop was stated for",
+    source="HYDROSTATICS", locator="also HI data book eq. 1.A.1",
+    note="density of the liquid that the drop was stated for",
 )
 
 AUTHORITY = formula(

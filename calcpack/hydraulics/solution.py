@@ -47,7 +47,7 @@ class PumpDuty:
 @dataclass(frozen=True)
 class ValveState:
     """A regulating or balancing valve: ``state`` 'active' (holds its setting), 'open' (cannot reach it), 'shut' or
-    'solved' (balanced); head lost in it (m); the flow coefficient that this takes (SI, m3/s), inf when it loses nothing.
+    'solved' (balanced); head lost in it (m); the flow coefficient that this takes (SI, m3/s), inf when nothing is lost.
     """
 
     state: str

@@ -20,7 +20,10 @@ def fill(job: Job) -> Sheet:
     sections = []
     for pump in job.project.system.pumps.values():
         cases = _cases(job, pump)
-        if cases and any(line.profile for line in job.project.system.lines.values()):
+        if not cases or not any(line.profile for line in job.project.system.lines.values()):
+            continue
+        lines = pump_path(cases[0], job.solved(cases[0]), pump).discharge
+        if not any(f"{line.tag}/H_2@{cases[0].id}" in job.ledger for line in lines):  # else drawn with another pump
             sections.append(_section(job, pump, cases))
     if not sections:
         return Sheet("grade_line", "Grade line", omitted="no line states the profile of its axis")

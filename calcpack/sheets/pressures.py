@@ -146,8 +146,9 @@ def _shut_off(job: Job, pump: Pump, cases: list[Case]) -> Section:
     for line in pump_path(case, job.solved(case), pump).discharge:
         if line.rating is not None:
             rating = job.input(f"{line.tag}/rating", line.rating, "p_rat", f"{line.tag}: pressure rating")
-            checks.append(judge(job, f"pressure/{line.tag}", f"{line.tag}: greatest pressure against the rating",
-                                [greatest_pressure], rating, AT_MOST, band=band).id)
+            checks.append(judge(job, f"pressure/{tag}/{line.tag}",
+                                f"{line.tag}: greatest pressure of {tag} against the rating", [greatest_pressure],
+                                rating, AT_MOST, band=band).id)
     if not checks:
         checks.append(ledger.not_decided(f"check/pressure/{tag}", f"{tag}: greatest pressure against the ratings",
                                          NOT_CHECKED, "the project states no rating").id)

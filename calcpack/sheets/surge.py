@@ -24,7 +24,10 @@ def fill(job: Job) -> Sheet:
         cases = [case for case in job.cases if f"{pump.tag}/p_d@{case.id}" in job.ledger]
         if not cases:
             continue
-        section = _section(job, pump, _longest(job, pump, cases[0]), cases)
+        line = _longest(job, pump, cases[0])
+        if f"{line.tag}/a" in job.ledger:
+            continue  # screened with another pump that feeds the same line
+        section = _section(job, pump, line, cases)
         if section:
             sections.append(section)
     if not sections:

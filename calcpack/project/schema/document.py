@@ -85,6 +85,10 @@ class LimitsInput(Sourced):
     velocity_band: Band | None = Field(None, description="velocity inside its limits from which a warning stands")
     authority: Band | None = Field(None, description="least authority of a control valve, in % of the branch's drop")
     authority_band: Band | None = Field(None, description="authority above that limit under which a warning stands")
+    loop_pressure: Annotated[Value, Quantity("gauge_pressure")] | None = Field(
+        None, description="least static pressure at the top of a closed loop"
+    )
+    loop_band: Band | None = Field(None, description="static pressure above that limit under which a warning stands")
     hot_liquid: Temperature | None = Field(None, description="temperature above which contact is cautioned against")
     cold_liquid: Temperature | None = Field(
         None, description="temperature at or below which frost is cautioned against"
