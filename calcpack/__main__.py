@@ -6,9 +6,11 @@ import argparse
 import json
 import os
 import shlex
+import signal
 import sys
 from collections.abc import Callable, Sequence
 from pathlib import Path
+from types import FrameType
 from typing import TextIO
 
 from calcpack import __version__
@@ -18,33 +20,68 @@ DONE, NOT_MET, REFUSED = 0, 1, 2
 STOPPED, NO_READER = 130, 141  # what a shell reports of a program that a signal ended
 
 
+LONGEST = 400  # characters of one message: an engine may quote a whole drawing
+
+
 def main(arguments: Sequence[str] | None = None) -> int:
     """Run one command. Returns 0 done, 1 a criterion is not met, 2 bad input or refused, 130 stopped by the user."""
-    for stream in (sys.stdout, sys.stderr):
-        stream.reconfigure(errors="backslashreplace")  # a terminal may lack characters, files never do
+    for stream in (sys.stdout, sys.stderr):  # a terminal may lack characters that results have
+        stream.reconfigure(errors="backslashreplace")
     parser = _parser()
     options = parser.parse_args(arguments)
     if options.command is None:
         parser.print_help(sys.stderr)
         return REFUSED
-    try:
-        status = options.run(options)
-        sys.stdout.flush()
-        return status
-    except KeyboardInterrupt:
-        print("calcpack: stopped", file=sys.stderr)
-        return STOPPED
-    except BrokenPipeError:  # the reader of our output went away
-        _drop_output()
-        return NO_READER
-    except CalcpackError as error:
-        _report_problems(error, options)
-        return REFUSED
-    except OSError as error:
-        if error.filename is None:  # our own output: a full disk
+    options.interrupt = Interrupt()
+    with options.interrupt:
+        try:
+            status = options.run(options)
+            sys.stdout.flush()
+            return status
+        except KeyboardInterrupt:
+            return _stopped()
+        except BrokenPipeError:  # the reader of our output went away
             _drop_output()
-        print(f"calcpack: {error.filename or 'output'}: {error.strerror}", file=sys.stderr)
+            return NO_READER
+        except CalcpackError as error:
+            if options.interrupt.asked:
+                return _stopped()
+            _report_problems(error, options)
+        except OSError as error:
+            if error.filename is None:  # our own output: a full disk
+                _drop_output()
+            print(f"calcpack: {error.filename or 'output'}: {error.strerror}", file=sys.stderr)
         return REFUSED
+
+
+class Interrupt:
+    """Ctrl-C that is not lost: libraries take a KeyboardInterrupt for a drawing that cannot be read, and go on."""
+
+    def __init__(self) -> None:
+        self.asked = False
+        self._before = signal.getsignal(signal.SIGINT)
+
+    def __enter__(self) -> None:
+        if self._before is signal.default_int_handler:
+            signal.signal(signal.SIGINT, self._handle)
+
+    def __exit__(self, *_: object) -> None:
+        if self._before is signal.default_int_handler:
+            signal.signal(signal.SIGINT, self._before)
+
+    def _handle(self, number: int, frame: FrameType | None) -> None:
+        self.asked = True
+        raise KeyboardInterrupt
+
+    def honour(self) -> None:
+        """Raise KeyboardInterrupt where one was lost."""
+        if self.asked:
+            raise KeyboardInterrupt
+
+
+def _stopped() -> int:
+    print("calcpack: stopped", file=sys.stderr)
+    return STOPPED
 
 
 def _drop_output() -> None:
@@ -97,7 +134,7 @@ def _new(options: argparse.Namespace) -> int:
 def _check(options: argparse.Namespace) -> int:
     from calcpack import build, terminal
 
-    outcome = build.check(options.folder, _progress())
+    outcome = build.check(options.folder, _progress(options))
     if options.json:
         _print_json(build.results_text(outcome))
     else:
@@ -109,7 +146,7 @@ def _draft(options: argparse.Namespace) -> int:
     from calcpack import build, terminal
     from calcpack.ledger import entry
 
-    outcome = build.draft(options.folder, _progress())
+    outcome = build.draft(options.folder, _progress(options))
     if options.json:
         _print_json(json.dumps({
             "pdf": str(outcome.pdf), "results": str(outcome.results), "sheets": outcome.pages,
@@ -143,11 +180,16 @@ def _print_json(text: str) -> None:
     print(text.rstrip("\n"))
 
 
-def _progress() -> Callable[[str], None]:
-    """Announces each step on a terminal; silent elsewhere."""
-    if not sys.stderr.isatty():
-        return lambda step: None
-    return lambda step: print(f"  {step}", file=sys.stderr, flush=True)
+def _progress(options: argparse.Namespace) -> Callable[[str], None]:
+    """Announces each step on a terminal, silent elsewhere; between steps the user may stop the program."""
+    show = sys.stderr.isatty()
+
+    def announce(step: str) -> None:
+        options.interrupt.honour()
+        if show:
+            print(f"  {step}", file=sys.stderr, flush=True)
+
+    return announce
 
 
 def _color(stream: TextIO) -> bool:
@@ -157,7 +199,7 @@ def _color(stream: TextIO) -> bool:
 def _report_problems(error: CalcpackError, options: argparse.Namespace) -> None:
     """Every problem as a line, or all as JSON; a problem of no file has an empty one."""
     of_inputs = isinstance(error, ProjectError)
-    problems = error.problems if of_inputs else [Problem("", 0, "", line) for line in str(error).splitlines()]
+    problems = error.problems if of_inputs else [Problem("", 0, "", one[:LONGEST]) for one in str(error).splitlines()]
     if getattr(options, "json", False):
         fields = ("file", "line", "where", "text", "hint")
         _print_json(json.dumps({"problems": [{name: getattr(one, name) for name in fields} for one in problems]}))

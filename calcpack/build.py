@@ -85,6 +85,7 @@ def draft(folder: Path, progress: Progress) -> Outcome:
     figures = pictures(outcome.job, outcome.content)
     progress(f"rendering {_counted(len(outcome.content), 'part')}")
     rendered = render(package_of(outcome.job, outcome.content, outcome.fingerprint), outcome.job.ledger, figures)
+    progress("writing")
     name = "".join(c if c.isalnum() or c in "-_." else "-" for c in outcome.job.project.document.number)
     pdf, data = target / f"{name}-draft.pdf", target / "results.json"
     try:

@@ -29,7 +29,7 @@ def package_of(job: Job, sheets: tuple[Sheet, ...], fingerprint: str) -> Package
 
 
 def _scope(job: Job) -> tuple[str, ...]:
-    excluded = "; ".join(statement.text for statement in job.project.exclusions)
+    excluded = "; ".join(statement.text.rstrip(". ") for statement in job.project.exclusions)
     covered = "Covers: the steady hydraulic calculation of this package for the cases listed."
     return (covered, f"Does not cover: {excluded}.") if excluded else (covered,)
 

@@ -64,9 +64,10 @@ _NODE = {
 }
 _PUMP = {
     "running": {"type": "integer", "minimum": 0, "description": "units that run, in parallel"},
+    "speed": _number("fraction of the speed of the curve"),
     "flow": _number("m3/s, of all running units together"),
     "flow_each": _number("m3/s, of one unit"),
-    "head": _number("m, of one unit"),
+    "head": _number("m, of one unit; beyond the curve data it is extrapolated, and a finding says so"),
     "efficiency": _number("fraction"),
     "shaft_power": _number("W, of one unit"),
     "share_of_best_efficiency_flow": _number("flow of one unit over its best-efficiency flow"),
@@ -75,6 +76,11 @@ _PUMP = {
     "npsh_ratio": _number("npsha over npshr"),
     "suction_pressure": _number("Pa gauge at the suction port, velocity head deducted"),
     "discharge_pressure": _number("Pa gauge at the discharge port, velocity head deducted"),
+}
+_VALVE = {
+    "state": _text("active (holds its setting), open (cannot reach it), shut, or solved (balanced)"),
+    "head": _number("m, lost in it"),
+    "flow_coefficient": _number("m3/s of water at 1 bar that this takes; null where nothing is lost"),
 }
 # Names of the pump's numbers that are ledger entries, and their symbols there.
 _PUMP_SYMBOLS = {
@@ -87,6 +93,8 @@ _CASE = {
     "lines": _by_tag("by tag of the line", _LINE),
     "nodes": _by_tag("by tag of the node; ports of a pump are P-101.suction and P-101.discharge", _NODE),
     "pumps": _by_tag("by tag of the pump: its duty", _PUMP),
+    "equipment": _by_tag("by tag of the equipment", {"head": _number("m, lost in it, signed like the flow")}),
+    "valves": _by_tag("by tag of the control or balancing valve", _VALVE),
     "convergence": _object("how the solution was reached", {
         "converged": {"type": "boolean"},
         "iterations": {"type": "integer"},
@@ -201,6 +209,10 @@ def _case(job: Job, case: Case) -> dict:
         "lines": {tag: _line(job, case, tag) for tag in solved.lines},
         "nodes": nodes,
         "pumps": {tag: _pump(job, case, tag) for tag in solved.pumps},
+        "equipment": {tag: {"head": _finite(head)} for line in solved.lines.values()
+                      for tag, head in line.equipment_head.items()},
+        "valves": {tag: {"state": one.state, "head": _finite(one.head), "flow_coefficient": _finite(one.coefficient)}
+                   for tag, one in solved.valves.items()},
         "convergence": {
             "converged": solved.convergence.converged, "iterations": solved.convergence.iterations,
             "continuity": _finite(solved.convergence.continuity), "energy": _finite(solved.convergence.energy),
@@ -228,8 +240,8 @@ def _pump(job: Job, case: Case, tag: str) -> dict:
     duty = job.solved(case).pumps[tag]
     booked = {name: f"{tag}/{symbol}@{case.id}" for name, symbol in _PUMP_SYMBOLS.items()}
     return {
-        "running": duty.running, "flow": _finite(duty.flow), "flow_each": _finite(duty.flow_each),
-        "head": _finite(duty.head),
+        "running": duty.running, "speed": _finite(job.solved(case).speeds.get(tag, 1.0)),
+        "flow": _finite(duty.flow), "flow_each": _finite(duty.flow_each), "head": _finite(duty.head),
         **{name: _finite(job.ledger[key].value) if key in job.ledger else None for name, key in booked.items()},
     }
 

@@ -1,6 +1,7 @@
 """Fixtures that several test modules share: the demo project computed once."""
 
 import os
+import shutil
 from pathlib import Path
 
 import pytest
@@ -13,10 +14,24 @@ settings.load_profile("explore" if os.environ.get("CALCPACK_EXPLORE") else "stea
 
 ROOT = Path(__file__).parent.parent
 LARKMERE = ROOT / "projects" / "larkmere-transfer"
+SMALL = ROOT / "tests" / "projects" / "small"
 
 
 def quiet(step: str) -> None:
     """Progress that nobody watches."""
+
+
+def edit(folder: Path, file: str, old: str, new: str) -> None:
+    """Put ``new`` in the place of the one ``old`` of an input file."""
+    text = (folder / file).read_text(encoding="utf-8")
+    assert text.count(old) == 1, f"{file} holds {old!r} {text.count(old)} times"
+    (folder / file).write_text(text.replace(old, new), encoding="utf-8")
+
+
+@pytest.fixture
+def small(tmp_path) -> Path:
+    """A copy of the small project, to edit."""
+    return Path(shutil.copytree(SMALL, tmp_path / "small", ignore=shutil.ignore_patterns("build")))
 
 
 @pytest.fixture(scope="session")
@@ -33,3 +48,13 @@ def larkmere_us():
     from calcpack import build
 
     return build.check(ROOT / "tests" / "projects" / "larkmere-us", quiet)
+
+
+@pytest.fixture(scope="session")
+def larkmere_draft(tmp_path_factory):
+    """Outcome of ``draft`` on a copy of demo 1: the files stand in the ``build`` folder of the copy."""
+    from calcpack import build
+
+    folder = tmp_path_factory.mktemp("draft") / "larkmere"
+    shutil.copytree(LARKMERE, folder, ignore=shutil.ignore_patterns("build"))
+    return build.draft(folder, quiet)

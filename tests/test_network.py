@@ -247,8 +247,10 @@ def test_system_curve_of_a_stopped_pump_starts_at_the_static_head():
 
 
 def test_crossings_of_a_drooping_curve():
-    low, high = crossings(b.project(states.two_duties()), "1", "P")
+    project = b.project(states.two_duties())
+    low, high = crossings(project, "1", "P")
     assert (low.stable, high.stable) == (False, True)
+    assert solve(project).cases["1"].pumps["P"].flow == pytest.approx(high.flow, rel=1e-9)  # the stable one is shown
     assert crossings(b.project(states.static_above_shutoff()), "1", "P") == ()
     with pytest.raises(KeyError):
         crossings(b.project(states.two_duties()), "1", "P9")

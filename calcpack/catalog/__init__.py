@@ -6,6 +6,7 @@
 ``fittings``  loss coefficients of fittings and valves
 ``materials`` pipe roughness
 ``motors``    motor ratings, margins and efficiency
+``pumps``     acceptance grades, factors for viscous liquids and reciprocating pumps
 ``criteria``  velocity ranges and suction margins
 ``water``     properties of liquid water
 """

@@ -4,8 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
-from calcpack.catalog.names import plain, unknown
-from calcpack.catalog.table import CatalogValue, Row, Table, load_table
+from calcpack.catalog.table import CatalogValue, load_table
 
 
 @dataclass(frozen=True)
@@ -32,7 +31,8 @@ class NpshMargin:
 
 def velocity_range(service: str) -> VelocityRange:
     """Velocity limits of ``service``; raises :class:`CatalogError` when it is unknown."""
-    table, row = _row("velocity_ranges", "velocity service", service)
+    table = load_table("velocity_ranges")
+    row = table.named_row("velocity service", service)
     limits = {
         column: table.optional(row, column, "velocity", row["title"])
         for column in ("minimum", "normal_low", "normal_high", "maximum")
@@ -42,7 +42,8 @@ def velocity_range(service: str) -> VelocityRange:
 
 def npsh_margin(service: str) -> NpshMargin:
     """Suction margin of ``service``; raises :class:`CatalogError` when it is unknown."""
-    table, row = _row("npsh_margins", "suction service", service)
+    table = load_table("npsh_margins")
+    row = table.named_row("suction service", service)
     return NpshMargin(
         service=row["service"],
         title=row["title"],
@@ -59,11 +60,3 @@ def velocity_services() -> list[str]:
 def npsh_services() -> list[str]:
     """Every service that has a suction margin."""
     return [row["service"] for row in load_table("npsh_margins").rows]
-
-
-def _row(table_name: str, what: str, service: str) -> tuple[Table, Row]:
-    table = load_table(table_name)
-    for row in table.rows:
-        if row["service"] == plain(service):
-            return table, row
-    raise unknown(what, service, (row["service"] for row in table.rows))

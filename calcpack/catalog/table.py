@@ -21,6 +21,7 @@ from pathlib import Path
 from types import MappingProxyType
 
 from calcpack.catalog.errors import CatalogError
+from calcpack.catalog.names import plain, unknown
 from calcpack.catalog.sources import source
 
 FOLDER = Path(__file__).parent / "tables"
@@ -76,6 +77,17 @@ class Table:
         """Bibliography key behind ``row``."""
         return row["source"] if self.source == BY_ROW else self.source
 
+    def named_row(self, what: str, name: str) -> Row:
+        """The row whose first key is ``name``, in any spelling; ``what`` says in a message what the name stands for.
+
+        Raises :class:`CatalogError` with the nearest names when there is none.
+        """
+        key = self.keys[0]
+        for row in self.rows:
+            if row[key] == plain(name):
+                return row
+        raise unknown(what, name, (row[key] for row in self.rows))
+
     def value(self, row: Row, column: str, kind: str, label: str) -> CatalogValue:
         """Number of ``column`` in SI with its provenance; ``label`` names the row for a reader.
 
@@ -121,8 +133,8 @@ def load_table(name: str) -> Table:
             raise CatalogError(f"table {name}: a row has not as many cells as the header", str(dict(row)))
     key, _, locator = heading["source"].partition(",")
     units = dict(pair.strip().split(" = ") for pair in heading["units"].split(";"))
-    if unknown := set(units.values()) - set(_TO_SI):
-        raise CatalogError(f"table {name}: unknown unit {sorted(unknown)}", f"known: {', '.join(_TO_SI)}")
+    if strange := set(units.values()) - set(_TO_SI):
+        raise CatalogError(f"table {name}: unknown unit {sorted(strange)}", f"known: {', '.join(_TO_SI)}")
     return Table(
         name=name,
         title=heading["title"],

@@ -1,9 +1,25 @@
 """Every formula of the program: importing this package declares them all in FORMULAS."""
 
-from calcpack.formulas import criteria, duty, fittings, grade, liquid, pipe_flow, pump, suction, surge
+from calcpack.formulas import (
+    acceptance,
+    criteria,
+    displacement,
+    duty,
+    fittings,
+    grade,
+    heat,
+    liquid,
+    pipe_flow,
+    pump,
+    speed,
+    suction,
+    surge,
+    valves,
+    viscous,
+)
 from calcpack.formulas.formula import FORMULAS, Formula, formula
 
 __all__ = [
-    "FORMULAS", "Formula", "criteria", "duty", "fittings", "formula", "grade", "liquid", "pipe_flow", "pump",
-    "suction", "surge",
+    "FORMULAS", "Formula", "acceptance", "criteria", "displacement", "duty", "fittings", "formula", "grade", "heat",
+    "liquid", "pipe_flow", "pump", "speed", "suction", "surge", "valves", "viscous",
 ]

@@ -104,13 +104,14 @@ def solve(net: Network, flow: np.ndarray | None = None) -> Result:
         law = _step(search, solver, law)
         balanced = _balanced(search, law)
         changed = _review(search, balanced)
-        done = balanced & ~changed
+        done = settled = balanced & ~changed
         if iteration == MOST_ITERATIONS:
             out.unsettled[search.blocks] = changed
             done = np.ones_like(done)
         if changed.any():
             law = laws.losses(search.net, search.flow, search.state)
         if done.any():
+            out.converged[search.blocks] = settled
             _store(search, law, done, iteration, out)
             keep = np.flatnonzero(~done)
             if not len(keep):
@@ -257,4 +258,4 @@ def _store(search: _Search, law: tuple[np.ndarray, np.ndarray], done: np.ndarray
     out.iterations[at], out.continuity[at], out.energy[at] = iteration, continuity, energy
     out.unsettled[at] |= search.rounds[columns] >= valves.MOST_ROUNDS
     small = (continuity <= ACCEPTED_CONTINUITY * throughput + least) & (energy <= ACCEPTED_ENERGY)
-    out.converged[at] = small & ~out.unsettled[at]
+    out.converged[at] &= small & ~out.unsettled[at]

@@ -258,7 +258,8 @@ class Line:
     friction_factor: Value | None = None  # a given Darcy factor replaces the correlation
     profile: tuple[ProfilePoint, ...] = ()
     surge_modulus: Value | None = None  # elastic modulus of the wall
-    surge_restraint: Value | None = None  # restraint factor c1
+    surge_poisson: Value | None = None  # Poisson's ratio of the wall
+    surge_restraint: Value | None = None  # restraint factor c1 as stated; else it follows from a formula
 
     @property
     def check_valve(self) -> Fitting | None:

@@ -16,16 +16,20 @@ def write_starter(folder: Path | str) -> list[Path]:
     Raises ProjectError when something stands in the folder already, or when it cannot be written.
     """
     target = Path(folder)
+    written: list[Path] = []
     try:
         target.mkdir(parents=True, exist_ok=True)
         if any(target.iterdir()):
             raise _refusal(target, "is not empty", "name a new folder")
-        written = []
         for stem in STEMS:
             path = target / f"{stem}.yaml"
-            path.write_bytes((_STARTER / path.name).read_bytes())
             written.append(path)
+            path.write_bytes((_STARTER / path.name).read_bytes())
+    except (FileExistsError, NotADirectoryError) as error:
+        raise _refusal(target, "is a file, or lies below one", "name a new folder") from error
     except OSError as error:
+        for path in written:  # four files or none
+            path.unlink(missing_ok=True)
         raise _refusal(target, f"cannot be written: {error.strerror}") from error
     return written
 

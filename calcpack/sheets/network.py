@@ -199,9 +199,12 @@ def _pressures(job: Job, cases: list[Case]) -> tuple[Block, ...]:
             if elevation is None or solved.heads[tag] != solved.heads[tag]:
                 continue
             z = job.input(f"{tag}/z", elevation, "z", f"{tag}: elevation", case)
-            if node.kind in (JUNCTION, PUMP_PORT):
+            key = f"{tag}/H@{case.id}"
+            if key in job.ledger:  # a path of a pump ends here
+                head = job.ledger[key]
+            elif node.kind in (JUNCTION, PUMP_PORT):
                 head = job.ledger.found(
-                    f"{tag}/H@{case.id}", solved.heads[tag], "H", f"{tag}: total head", "head", source="BERNOULLI",
+                    key, solved.heads[tag], "H", f"{tag}: total head", "head", source="BERNOULLI",
                     locator="network solution", residual=solved.convergence.energy, case=case.id,
                 )
             else:

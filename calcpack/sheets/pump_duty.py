@@ -147,11 +147,13 @@ def _curve_shape(job: Job, pump: Pump) -> Entry:
 def _section(job: Job, pump: Pump, cases: list[Case], checks: tuple[str, ...]) -> Section:
     tag = pump.tag
     normal = next((case for case in cases if case.id == job.project.normal_case), cases[0])
-    symbols = [symbol for symbol in ("Q", "Q_1", "H", "eta", "NPSHR", "r", "closure")
+    symbols = [symbol for symbol in ("Q", "Q_1", "H", "eta", "NPSHR", "r")
                if f"{tag}/{symbol}@{normal.id}" in job.ledger]
     derived = tuple(f"{tag}/{symbol}@{normal.id}" for symbol in symbols
                     if symbol != "Q_1" or job.ledger[f"{tag}/Q_1@{normal.id}"].formula)
-    at_case = ("n", "Q_BEP", "Q_end", "a_0", "a_1", "b_1", "b_2", "b_3", "c_0", "B", "C_Q", "C_HB", "C_eta")
+    at_case = ["n", "Q_BEP", "Q_end", "a_0", "a_1", "b_1", "b_2", "b_3", "c_0", "C_Q", "C_HB", "C_eta"]
+    if f"{tag}/C_Q@{normal.id}" in job.ledger:
+        at_case.insert(at_case.index("C_Q"), "B")
     derived = (*(entry_id for entry_id in (f"{tag}/{name}@{normal.id}" for name in at_case) if entry_id in job.ledger),
                *derived)
     heads = {"Q": ("Flow", "flow"), "H": ("Head, curve", "head"), "eta": ("Efficiency", "efficiency"),

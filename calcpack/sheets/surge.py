@@ -11,6 +11,7 @@ from calcpack.sheets.criteria import AT_MOST, judge
 from calcpack.sheets.job import Job, greatest
 from calcpack.sheets.path import pump_path
 
+ANCHORAGE = "throughout"
 STATEMENT = (
     "This is a screening, not a surge analysis: one line, liquid without gas, a sudden full stop. Line packing, "
     "reflections and the collapse of vapour cavities can exceed it, and the lowest pressures are not followed."
@@ -47,12 +48,16 @@ def _section(job: Job, pump: Pump, line: Line, cases: list[Case]) -> Section | N
     bulk = case.liquid.bulk_modulus
     if line.surge_modulus is None or bulk is None or line.pipe.wall is None:
         return None
+    if line.surge_restraint is None and line.surge_poisson is None:
+        return None
+    bore, wall = job.at(f"{tag}/D", case), job.input(f"{tag}/t", line.pipe.wall, "t", "Wall thickness")
+    formula, reason = surge.wave_speed_formula(bore.value / wall.value)
+    restraint, derived = _restraint(job, line, bore, wall, formula is surge.WAVE_SPEED_THICK)
     wave = ledger.apply(
-        f"{tag}/a", surge.WAVE_SPEED, case=case.id, rho=job.density(case), D=job.at(f"{tag}/D", case),
+        f"{tag}/a", formula, case=case.id, rho=job.density(case), D=bore,
         K_b=job.input(f"liquid/K_b@{case.temperature}", bulk, "K_b", "Bulk modulus of the liquid"),
         E=job.input(f"{tag}/E", line.surge_modulus, "E", f"{tag}: elastic modulus of the wall"),
-        t=job.input(f"{tag}/t", line.pipe.wall, "t", "Wall thickness"),
-        c_1=job.input(f"{tag}/c_1", line.surge_restraint, "c_1", f"{tag}: restraint factor"),
+        t=wall, c_1=restraint,
     )
     time = ledger.apply(f"{tag}/t_r", surge.REFLECTION_TIME, case=case.id, L=ledger[f"{tag}/L"], a=wave)
     head = ledger.apply(f"{tag}/Delta_h@{case.id}", surge.JOUKOWSKY_HEAD, case=case.id, a=wave, V=fastest,
@@ -64,9 +69,10 @@ def _section(job: Job, pump: Pump, line: Line, cases: list[Case]) -> Section | N
     lower = ledger.apply(f"{tag}/p_l@{case.id}", surge.LOWER_ESTIMATE, case=case.id,
                          p_d=f"{pump.tag}/p_d@{case.id}", dp=rise)
     check = _screen(job, line, upper, lower, case)
-    ids = (wave.id, time.id, head.id, rise.id, upper.id, lower.id)
+    ids = (*derived, wave.id, time.id, head.id, rise.id, upper.id, lower.id)
     blocks: tuple[Block, ...] = (
         Prose(STATEMENT, "caution"),
+        Prose(f"The pipe is taken as {surge.ANCHORAGES[ANCHORAGE][1]}; {reason}."),
         Derivation(ids, governing=(upper.id,)),
         Verdicts((check.id,)),
         Prose(
@@ -75,6 +81,19 @@ def _section(job: Job, pump: Pump, line: Line, cases: list[Case]) -> Section | N
         ),
     )
     return Section(f"surge-{tag}", f"{tag} {line.description}", blocks)
+
+
+def _restraint(job: Job, line: Line, bore: Entry, wall: Entry, thick: bool) -> tuple[Entry, tuple[str, ...]]:
+    """Restraint factor as stated, else of a pipe anchored throughout, for a thick wall too; and what it derives."""
+    tag, ledger = line.tag, job.ledger
+    if line.surge_restraint is not None:
+        return job.input(f"{tag}/c_1", line.surge_restraint, "c_1", f"{tag}: restraint factor"), ()
+    poisson = job.input(f"{tag}/nu_w", line.surge_poisson, "nu", f"{tag}: Poisson's ratio of the wall")
+    thin = ledger.apply(f"{tag}/c_0", surge.ANCHORAGES[ANCHORAGE][0], symbol="c_0", nu=poisson)
+    if not thick:
+        return thin, (thin.id,)
+    factor = ledger.apply(f"{tag}/c_1", surge.RESTRAINT_THICK, t=wall, D=bore, nu=poisson, c_0=thin)
+    return factor, (thin.id, factor.id)
 
 
 def _screen(job: Job, line: Line, upper: Entry, lower: Entry, case: Case) -> Entry:

@@ -25,7 +25,7 @@ def resolve_line(draft: Draft, tag: str, line: LineInput) -> Line:
     pipe, dn = (BROKEN, None) if line.pipe is BROKEN else resolve_pipe(draft, (*keys, "pipe"), line.pipe)
     material = pipe.material if pipe is not BROKEN else BROKEN
     minimum, maximum = _velocity(draft, keys, line)
-    modulus, restraint = resolve_surge(draft, keys, line, material)
+    surge = resolve_surge(draft, keys, line, material)
     profile = line.profile or ()
     _check_profile(draft, keys, line)
     return Line(
@@ -44,8 +44,7 @@ def resolve_line(draft: Draft, tag: str, line: LineInput) -> Line:
         rating=line.rating,
         friction_factor=line.friction_factor,
         profile=tuple(ProfilePoint(one.chainage, one.elevation) for one in profile if one is not BROKEN),
-        surge_modulus=modulus,
-        surge_restraint=restraint,
+        **surge,
     )
 
 

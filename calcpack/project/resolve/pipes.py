@@ -74,12 +74,15 @@ def resolve_roughness(draft: Draft, keys: Keys, line: LineInput, material: str) 
     return found
 
 
-def resolve_surge(draft: Draft, keys: Keys, line: LineInput, material: str) -> tuple[Value | None, Value | None]:
-    """Modulus of elasticity and restraint factor: as stated, else those of the material, else None."""
+def resolve_surge(draft: Draft, keys: Keys, line: LineInput, material: str) -> dict[str, Value | None]:
+    """Modulus of elasticity, Poisson's ratio and restraint factor by their name in Line.
+
+    Modulus and ratio are as stated, else those of the material; a factor that is not stated follows from a formula.
+    """
     modulus = line.surge.modulus if line.surge else None
-    restraint = line.surge.restraint if line.surge else None
+    poisson = line.surge.poisson if line.surge else None
     if material in _ELASTIC:
-        gigapascal, poisson = _ELASTIC[material]
+        gigapascal, ratio = _ELASTIC[material]
         name = material.replace("_", " ")
         if modulus is None:
             note = f"usual value for {name}; from memory, not seen"
@@ -87,13 +90,11 @@ def resolve_surge(draft: Draft, keys: Keys, line: LineInput, material: str) -> t
                 (*keys, "surge", "modulus"), float(gigapascal) * 1e9, "elastic_modulus", f"{gigapascal} GPa",
                 "WAVE-SPEED", note,
             )  # fmt: skip
-        if restraint is None:
-            factor = round(1 - float(poisson) ** 2, 4)
-            note = f"anchored throughout: 1 less the square of Poisson's ratio, {poisson}; from memory, not seen"
-            restraint = draft.supplied(
-                (*keys, "surge", "restraint"), factor, "dimensionless", f"{factor:g}", "WAVE-SPEED", note
-            )
-    return modulus, restraint
+        if poisson is None:
+            note = f"usual value for {name}; from memory, not seen"
+            poisson = draft.supplied((*keys, "surge", "poisson"), float(ratio), "ratio", ratio, "WAVE-SPEED", note)
+    restraint = line.surge.restraint if line.surge else None
+    return {"surge_modulus": modulus, "surge_poisson": poisson, "surge_restraint": restraint}
 
 
 def _row(draft: Draft, keys: Keys, pipe: PipeInput) -> pipes.PipeSize | None:

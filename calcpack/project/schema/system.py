@@ -146,8 +146,11 @@ class SurgeInput(Sourced):
     modulus: Annotated[Value, Quantity("elastic_modulus", above=0.0)] | None = Field(
         None, description="modulus of elasticity of the wall"
     )
+    poisson: Annotated[Value, Quantity("ratio", above=0.0, most=0.5)] | None = Field(
+        None, description="Poisson's ratio of the wall"
+    )
     restraint: Annotated[Value, Quantity("dimensionless", above=0.0, most=2.0)] | None = Field(
-        None, description="restraint factor of the wave-speed formula"
+        None, description="restraint factor of the wave-speed formula; else that of a pipe anchored throughout"
     )
 
 
