@@ -147,10 +147,8 @@ _ENTRY = {
     },
     "points_kind": _text("of a curve: quantity kind of the swept number"),
 }
-RESULTS_SCHEMA = {
-    "$schema": "https://json-schema.org/draft/2020-12/schema",
-    "title": "Results of a calculation package",
-    "description": "Numbers are SI (m, s, kg, Pa, W, K, rad/s), unrounded; null stands for a number that does not "
+_CONVENTIONS = (
+    "Numbers are SI (m, s, kg, Pa, W, K, rad/s), unrounded; null stands for a number that does not "
     "exist. Heads are total energy heads above the project datum. Pressures are gauge unless the kind says absolute. "
     "The pressure of a node is that of liquid brought to rest: it belongs to the total head. The pressure at an end of "
     "a line is that of the flowing liquid at the elevation of the node: the velocity head of the line is deducted at "
@@ -158,8 +156,12 @@ RESULTS_SCHEMA = {
     "losses of the line lie between. "
     "Stability: within one version a field keeps its name, place, unit and meaning, and none that is required goes; "
     "new fields, kinds, origins and finding codes may come, so a reader passes over what it does not know. "
-    "Ids of entries are stable between revisions of a project. The version is raised when anything else changes.",
-    **_object("", {
+    "Ids of entries are stable between revisions of a project. The version is raised when anything else changes."
+)
+RESULTS_SCHEMA = {
+    "$schema": "https://json-schema.org/draft/2020-12/schema",
+    "title": "Results of a calculation package",
+    **_object(_CONVENTIONS, {
         "format": {"const": FORMAT},
         "version": {"const": VERSION},
         "program": {"type": "object", "additionalProperties": _TEXT, "description": "names and versions"},

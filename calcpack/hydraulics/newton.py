@@ -244,7 +244,8 @@ def _store(search: _Search, law: tuple[np.ndarray, np.ndarray], done: np.ndarray
     state, dead, head = search.state[:, columns], search.dead[:, columns], search.head[:, columns]
     residual = np.where(state != 0, law[0][:, columns] - net.topology.drop(head), 0.0)
     flow = search.flow[:, columns]
-    noise = law[1][:, columns] * np.abs(flow) < HEAD_NOISE * (1.0 + np.max(np.abs(head), axis=0, initial=0.0))
+    resolved = 10.0 * HEAD_NOISE * (1.0 + np.max(np.abs(head), axis=0, initial=0.0))
+    noise = law[1][:, columns] * np.abs(flow) < resolved
     area = valves.area_of_links(net)
     at_rest = (np.abs(flow) <= SPEED_TOLERANCE * area) | (noise & (np.abs(flow) <= NOISE_SPEED * area))
     quiet = np.where(at_rest, 0.0, flow)
