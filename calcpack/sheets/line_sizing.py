@@ -11,6 +11,7 @@ from calcpack.sheets.criteria import AT_LEAST, AT_MOST, house_limit, judge
 from calcpack.sheets.job import Job
 
 ONE_FLOW = 1e-6  # relative: lines that differ by less carry the same flow
+CANDIDATE = "/size/"  # stands in the ids of entries of a candidate size
 NEIGHBOURS = 2  # catalog sizes shown on each side of the chosen one
 
 
@@ -53,12 +54,12 @@ def _candidates(job: Job, case: Case, line: Line, flow: Entry) -> list[Block]:
     rows, fitting = [], []
     for size in shown:
         velocity = _book(job, case, line, flow, size)
-        key = f"{line.tag}/size/{size.nominal}"
+        key = f"{line.tag}{CANDIDATE}{size.nominal}"
         inside = _inside(line, velocity)
         if not inside:
             fitting.append(size)
-        cells = (size.nominal, Ref(f"{key}/D"), Ref(f"{key}/V"), Ref(f"{key}/Re"), Ref(f"{key}/f"), Ref(f"{key}/J"),
-                 Ref(f"{key}/h_f"), inside or "inside the limits")
+        shown_symbols = ("D_o", "t", "D", "V", "Re", "f", "J", "h_f")
+        cells = (size.nominal, *(Ref(f"{key}/{symbol}") for symbol in shown_symbols), inside or "inside")
         rows.append(Row(cells, mark="chosen" if size is chosen else ""))
     smallest = fitting[0].nominal if fitting else None
     reason = "the smallest of the sizes shown that keeps the velocity inside its limits at the sizing flow"
@@ -67,18 +68,18 @@ def _candidates(job: Job, case: Case, line: Line, flow: Entry) -> list[Block]:
                   f"stated by the project; the smallest size inside the velocity limits would be {smallest}")
     job.ledger.chosen(f"{line.tag}/size", chosen.nominal, f"{line.tag}: size", reason=reason, source="TOOL",
                       operands={"Q": flow.id})
-    key = f"{line.tag}/size/{chosen.nominal}"
     columns = (
-        Column("Size", width=1.5),
-        *(Column(title, symbol, kind, f"{key}/{symbol}") for title, symbol, kind in (
-            ("Inside diameter", "D", "diameter"), ("Velocity", "V", "velocity"),
-            ("Reynolds number", "Re", "reynolds_number"), ("Friction factor", "f", "friction_factor"),
-            ("Gradient", "J", "gradient"), ("Friction head", "h_f", "head"))),
-        Column("Velocity limits", width=1.6),
+        Column("Size", width=1.7),
+        *(Column(title, symbol, kind) for title, symbol, kind in (
+            ("Outside diameter", "D_o", "diameter"), ("Wall", "t", "diameter"), ("Inside diameter", "D", "diameter"),
+            ("Velocity", "V", "velocity"), ("Reynolds number", "Re", "reynolds_number"),
+            ("Friction factor", "f", "friction_factor"), ("Gradient", "J", "gradient"),
+            ("Friction head", "h_f", "head"))),
+        Column("Velocity limits", width=1.4),
     )
-    columns = tuple(Column(c.title, c.symbol, c.kind, "", c.width) for c in columns)
     return [
-        Prose(f"Sizes of {line.pipe.standard}, schedule {line.pipe.schedule}, at the flow {{{flow.id}}} in new pipe. "
+        Prose(f"Sizes of {line.pipe.standard}, schedule {line.pipe.schedule} "
+              f"({{{line.tag}{CANDIDATE}{chosen.nominal}/D_o|source}}), at the flow {{{flow.id}}} in new pipe. "
               f"Chosen: {{{line.tag}/size|choice}}, {reason}."),
         Table(f"{line.tag}: candidate sizes", columns, tuple(rows)),
     ]
@@ -93,7 +94,7 @@ def _inside(line: Line, velocity: Entry) -> str:
 
 
 def _book(job: Job, case: Case, line: Line, flow: Entry, size: pipes.PipeSize) -> Entry:
-    key, ledger = f"{line.tag}/size/{size.nominal}", job.ledger
+    key, ledger = f"{line.tag}{CANDIDATE}{size.nominal}", job.ledger
     for symbol, value, word in (("D_o", size.outside_diameter, "outside diameter"), ("t", size.wall, "wall")):
         ledger.looked_up(f"{key}/{symbol}", value.value, symbol, f"{size.nominal}: {word}", "diameter",
                          source=value.source, locator=f"{value.table}, {value.row}", digits=4)

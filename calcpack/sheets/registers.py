@@ -13,6 +13,7 @@ from calcpack.project.model import Statement
 from calcpack.quantities import KINDS
 from calcpack.sheets.content import Block, Cell, Column, Facts, Prose, Ref, Row, Section, Sheet, Table
 from calcpack.sheets.job import Job
+from calcpack.sheets.line_sizing import CANDIDATE
 from calcpack.values import CONFIRMED, UNCONFIRMED, Value
 
 OPEN = "open"
@@ -239,7 +240,8 @@ def _statements(caption: str, statements: Sequence[Statement]) -> Table:
 def _looked_up(job: Job) -> Section:
     columns = (Column("Value", width=2.8), Column("Entry", width=2.2), Column("As used", width=1.2),
                Column("Source and row", width=4.2))
-    entries = [entry for entry in job.ledger.of_origin(LOOKED_UP) if entry.citation.key != TOOL]
+    entries = [entry for entry in job.ledger.of_origin(LOOKED_UP)
+               if entry.citation.key != TOOL and CANDIDATE not in entry.id]  # candidate sizes stand in their own table
     rows = tuple(
         Row((Ref(entry.id, "title"), entry.id, Ref(entry.id, "quantity"), _sourced(entry))) for entry in entries
     )
