@@ -136,6 +136,16 @@ def test_the_only_low_pressure_of_a_transfer_is_said_in_its_units():
         assert expected in cases["4"].findings[0].text
 
 
+def test_a_pressure_between_vapour_and_vacuum_is_below_vapour_pressure():
+    for vapour, code in ((99.2e3, "sub-atmospheric"), (99.4e3, "below-vapour-pressure")):  # the port has 99.30 kPa
+        case = transfer().case("4")
+        state = replace(case.liquid, vapour_pressure=b.value(vapour, "absolute_pressure"))
+        liquid = replace(case.system.liquid, states={"warm": state})
+        case = replace(case, system=replace(case.system, liquid=liquid))
+        (finding,) = solve(b.project(case)).cases["4"].findings
+        assert finding.code == code
+
+
 # Each state: builder, the findings it must give (code, tag, parts of the text), flows in m3/h that must come out.
 DEGENERATE = [
     (states.static_above_shutoff,

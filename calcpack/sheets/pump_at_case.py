@@ -21,6 +21,7 @@ AT_SPEED = {
     "a_0": speed.HEAD_CONSTANT, "a_1": speed.HEAD_SLOPE, "b_1": speed.EFFICIENCY_LINEAR,
     "b_2": speed.EFFICIENCY_SQUARE, "b_3": speed.EFFICIENCY_CUBE, "c_0": speed.NPSHR_CONSTANT,
 }  # the coefficients that change with speed
+CORRECTED = "viscosity-corrected"  # finding of the solver
 POWER_OF_SPEED = {"H": 2, "eta": 0, "NPSHR": 2}
 
 
@@ -89,9 +90,10 @@ def speed_of(job: Job, pump: Pump, case: Case) -> Entry:
 
 
 def viscous_factors(job: Job, pump: Pump, case: Case) -> dict[str, Entry] | None:
-    """Correction factors of ANSI/HI 9.6.7 for the liquid of the case, or None where the water curve holds."""
+    """Correction factors of ANSI/HI 9.6.7 for the liquid of the case; None where the solver used the water curve."""
     tag, ledger = pump.tag, job.ledger
-    if not pump.viscosity_correction or f"{tag}/H_BEP" not in ledger:
+    corrected = any(one.code == CORRECTED and one.tag == tag for one in job.solved(case).findings)
+    if not corrected or f"{tag}/H_BEP" not in ledger:
         return None
     speed_now, best = speed_of(job, pump, case), best_flow(job, pump, case)
     nu_id = f"liquid/nu@{case.temperature}"
