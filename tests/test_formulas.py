@@ -116,10 +116,12 @@ def quantities(made, values, system):
 
 
 def sample(made, seed=1):
-    """Operand values of moderate size, list operands with three entries."""
+    """Operand values of moderate size, list operands with three entries; a lone ratio lies inside its range."""
     random = np.random.default_rng(seed)
+    low = {limits.expression: limits.low for limits in made.valid if made.kinds.get(limits.expression) == "ratio"}
     return {
-        name: random.uniform(0.2, 0.8, 3).tolist() if kind.endswith("[]") else float(random.uniform(0.2, 0.8))
+        name: random.uniform(0.2, 0.8, 3).tolist() if kind.endswith("[]")
+        else float(random.uniform(0.2, 0.8)) + (low.get(name) or 0.0)
         for name, kind in made.kinds.items()
     }
 

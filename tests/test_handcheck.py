@@ -261,6 +261,7 @@ RANGES = {
     "quadratic_coefficient": (-1e5, 1e5), "efficiency_slope": (1.0, 100.0), "efficiency_square": (-5e3, 5e3),
     "efficiency_cube": (-1e5, 1e5), "fraction": (0.01, 1.0), "ratio": (0.1, 3.0), "dimensionless": (0.5, 300.0),
     "loss_coefficient": (0.02, 30.0), "angle": (0.05, 1.5),
+    "kinematic_viscosity": (2e-7, 5e-4), "temperature_difference": (1.0, 40.0),
     "flow_coefficient_kv": (1e-4, 1.0), "flow_coefficient_cv": (1e-4, 1.0), "displacement": (1e-6, 1e-3),
 }  # fmt: skip
 EXPLICIT = [made for made in FORMULAS.values() if not made.unknown]
