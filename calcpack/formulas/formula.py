@@ -36,9 +36,13 @@ class Range:
     tree: Node
 
     def holds(self, values: Mapping[str, object]) -> bool:
-        """True when the expression of ``values`` lies inside the range."""
-        value = evaluate(self.tree, values)
-        return (self.low is None or value >= self.low) and (self.high is None or value <= self.high)
+        """True when the expression of ``values`` lies inside the range; one without a value (0/0) lies outside."""
+        try:
+            with np.errstate(all="ignore"):
+                value = evaluate(self.tree, values)
+        except ZeroDivisionError:
+            return False
+        return bool((self.low is None or value >= self.low) and (self.high is None or value <= self.high))
 
 
 @dataclass(frozen=True, eq=False)
