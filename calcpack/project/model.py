@@ -8,6 +8,16 @@ from __future__ import annotations
 from collections.abc import Mapping
 from dataclasses import dataclass, field
 
+from calcpack.project.paper import (
+    Document,
+    Economy,
+    InputFile,
+    Person,
+    Requirement,
+    RevisionNote,
+    SourceDocument,
+    Statement,
+)
 from calcpack.values import Value
 
 # Kinds of node.
@@ -15,87 +25,6 @@ TANK = "tank"  # free surface at a named level, with an optional gas pressure ab
 OUTLET = "outlet"  # free discharge at an elevation
 JUNCTION = "junction"  # continuity, with an optional demand
 PUMP_PORT = "pump port"  # suction or discharge connection of a pump, at its shaft elevation
-
-
-@dataclass(frozen=True)
-class Document:
-    """Title-block data (ISO 7200 fields) of the package."""
-
-    project: str
-    title: str
-    number: str
-    type: str
-    owner: str
-    revision: str
-    status: str
-    date: str
-    language: str = "en"
-    contract: str = ""
-    location: str = ""
-    department: str = ""
-    classification: str = ""
-
-
-@dataclass(frozen=True)
-class Person:
-    """Someone with a role in the package: originator, checker, approver, responsible engineer."""
-
-    role: str
-    name: str
-    organisation: str = ""
-    licence: str = ""
-
-
-@dataclass(frozen=True)
-class RevisionNote:
-    """One line of the revision history as the project states it."""
-
-    revision: str
-    date: str
-    reason: str
-
-
-@dataclass(frozen=True)
-class SourceDocument:
-    """A document of the project that inputs cite."""
-
-    id: str
-    title: str
-    revision: str = ""
-    date: str = ""
-
-
-@dataclass(frozen=True)
-class Statement:
-    """An assumption, note or exclusion in the user's words; ``status`` open or closed, ``owner`` who closes it."""
-
-    id: str
-    text: str
-    reason: str = ""
-    status: str = ""
-    owner: str = ""
-    covered_by: str = ""
-    place: str = ""
-
-
-@dataclass(frozen=True)
-class Requirement:
-    """What the system must deliver: Values or None where the user states none."""
-
-    flow: Value | None  # flow
-    margin: Value | None  # fraction added to the flow
-    daily_volume: Value | None  # daily_flow
-    running_time: Value | None  # hours per day
-    case: str = ""  # the case at which the design flow is wanted
-
-
-@dataclass(frozen=True)
-class Economy:
-    """Energy figures: tariff per energy (energy_price), currency word, operating days a year."""
-
-    tariff: Value | None
-    currency: str
-    days_per_year: Value | None
 
 
 @dataclass(frozen=True)
@@ -388,15 +317,6 @@ class Case:
     def liquid(self) -> LiquidState:
         """Liquid properties of the case."""
         return self.system.liquid.states[self.temperature]
-
-
-@dataclass(frozen=True)
-class InputFile:
-    """One file of the folder as read."""
-
-    name: str
-    text: str
-    sha256: str
 
 
 @dataclass(frozen=True)
