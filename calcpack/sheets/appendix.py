@@ -16,7 +16,7 @@ def fill(job: Job) -> Sheet:
         Prose("The same input files and the same program give the same numbers and the same file."),
         Facts((*((name, text) for name, text in job.program.items()), ("fingerprint", fingerprint(job)))),
     ]
-    return Sheet("appendix", "Appendix: inputs as read and program identity", (
+    return Sheet("appendix", "Inputs as read", (
         Section("appendix-program", "Program and fingerprint", tuple(identity)),
         Section("appendix-inputs", "Input files as read", listings or (Prose("No file was read.", "note"),)),
     ))
