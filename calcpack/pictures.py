@@ -82,13 +82,19 @@ def _curve_spec(job: Job, pump: Pump) -> SystemCurveSpec:
     shares = (_one(job, f"{tag}/r_low"), _one(job, f"{tag}/r_high"))
     return SystemCurveSpec(
         cases=tuple(_case_curve(job, tag, case) for case in cases),
-        pumps=(PumpCurve(tag, units=tuple(units), **curves, **points),),
+        pumps=(PumpCurve(tag, units=tuple(units), **curves, **points), *_other_speeds(job, tag, cases)),
         required=_required(job, tag),
         best_flow=_one(job, f"{tag}/Q_BEP"),
         preferred=shares if all(shares) else None,
         minimum_flow=_one(job, f"{tag}/Q_min"),
         motor_rating=_one(job, f"{tag}/P_m"),
     )
+
+
+def _other_speeds(job: Job, tag: str, cases: list[Case]) -> list[PumpCurve]:
+    """The head curve of every case that runs the pump at another speed."""
+    return [PumpCurve(f"{tag}, case {case.id}", head=f"curve/{tag}/head@{case.id}", units=(case.pumps[tag],))
+            for case in cases if f"curve/{tag}/head@{case.id}" in job.ledger]
 
 
 def _case_curve(job: Job, tag: str, case: Case) -> CaseCurve:

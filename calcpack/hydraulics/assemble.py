@@ -9,16 +9,15 @@ import numpy as np
 
 from calcpack.errors import CalcpackError
 from calcpack.formulas.duty import TANK_HEAD
-from calcpack.formulas.fittings import COEFFICIENT, EQUIPMENT_QUADRATIC, FULLY_TURBULENT
+from calcpack.formulas.fittings import COEFFICIENT, FULLY_TURBULENT
 from calcpack.formulas.pipe_flow import AREA, BORE, RELATIVE_ROUGHNESS
-from calcpack.hydraulics.curves import FittedCurve, pump_curves
+from calcpack.hydraulics.curves import FittedCurve, at_speed, pump_curves
+from calcpack.hydraulics.equipment import quadratic_head
 from calcpack.hydraulics.network import HeadCurves, Network
 from calcpack.hydraulics.topology import Topology
-from calcpack.project.model import JUNCTION, OUTLET, PUMP_PORT, TANK, Case, Line, LossState, Node, Pipe
+from calcpack.project.model import FIXED, JUNCTION, OUTLET, PUMP_PORT, TANK, Case, Line, LossState, Node, Pipe
 
 CLEAN_STEEL = 0.0457e-3  # m, roughness behind the fully turbulent factor (TP-410, 2009 edition)
-FIXED = "fixed"
-QUADRATIC = "quadratic"
 
 
 @dataclass(frozen=True, eq=False)
@@ -100,11 +99,12 @@ def _lines(cases: Sequence[Case]) -> dict[str, np.ndarray]:
             roughness = None if state is None else line.roughness[state]  # a line of given friction factor needs none
             states = tuple(state for _, state in equipment_states(case, line)) if line.equipment else ()
             to_outlet = case.system.nodes[line.end].kind == OUTLET
-            key = (id(line), id(roughness), to_outlet, *map(id, states))
+            gravity = case.system.site.gravity.si
+            key = (id(line), id(roughness), to_outlet, gravity, *map(id, states))
             place = seen.get(key)
             if place is None:
                 place = seen[key] = len(rows)
-                rows.append(_row(line, 0.0 if roughness is None else roughness.si, states, to_outlet))
+                rows.append(_row(line, 0.0 if roughness is None else roughness.si, states, to_outlet, gravity))
             index[i, column] = place
     table = np.array(rows, dtype=float).reshape(len(rows), 9)
     diameter, length, roughness, factor, plain, crane, equipment, fixed, check = table.T
@@ -123,7 +123,9 @@ def _lines(cases: Sequence[Case]) -> dict[str, np.ndarray]:
     return {name: column[index] for name, column in columns.items()}
 
 
-def _row(line: Line, roughness: float, states: tuple[LossState, ...], to_outlet: bool) -> tuple[float, ...]:
+def _row(
+    line: Line, roughness: float, states: tuple[LossState, ...], to_outlet: bool, gravity: float
+) -> tuple[float, ...]:
     plain = crane = equipment = fixed = 0.0
     for fitting in line.fittings:
         if fitting.method == "n_fT":
@@ -135,10 +137,8 @@ def _row(line: Line, roughness: float, states: tuple[LossState, ...], to_outlet:
     for state in states:
         if state.law == FIXED:
             fixed += state.head.si
-        elif state.law == QUADRATIC and state.flow is not None:
-            equipment += EQUIPMENT_QUADRATIC.evaluate(h_r=state.head.si, Q=1.0, Q_r=state.flow.si)
         else:
-            raise CalcpackError(f"{line.tag}: equipment state {state.name}: a quadratic loss needs its flow")
+            equipment += quadratic_head(state, 1.0, gravity)
     factor = float("nan") if line.friction_factor is None else line.friction_factor.si
     check = float(line.check_valve is not None or to_outlet)  # an outlet has no liquid to give back
     return bore(line.pipe), line.length.si, roughness, factor, plain, crane, equipment, fixed, check
@@ -171,15 +171,17 @@ def surface(case: Case, node: Node) -> float:
 
 def _pumps(cases: Sequence[Case]) -> tuple[np.ndarray, np.ndarray, tuple[tuple[FittedCurve, ...], ...]]:
     """Units running and best-efficiency flows (pumps, B), and head curves; a curve that cases share is fitted once."""
-    fitted: dict[int, FittedCurve] = {}
+    fitted: dict[tuple[int, float], FittedCurve] = {}
     shape = (len(cases[0].system.pumps), len(cases))
     running, rated = np.zeros(shape), np.zeros(shape)
     curves: list[list[FittedCurve]] = [[] for _ in range(shape[0])]
     for column, case in enumerate(cases):
         for i, pump in enumerate(case.system.pumps.values()):
-            if id(pump.curve) not in fitted:
-                fitted[id(pump.curve)] = pump_curves(pump).head
-            curves[i].append(fitted[id(pump.curve)])
+            ratio = case.speeds[pump.tag].si if pump.tag in case.speeds else 1.0
+            key = (id(pump.curve), ratio)
+            if key not in fitted:
+                fitted[key] = at_speed(pump_curves(pump).head, ratio)
+            curves[i].append(fitted[key])
             running[i, column] = case.pumps[pump.tag]
-            rated[i, column] = pump.best_efficiency_flow.si
+            rated[i, column] = ratio * pump.best_efficiency_flow.si
     return running, rated, tuple(tuple(row) for row in curves)

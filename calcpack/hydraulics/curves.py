@@ -91,6 +91,18 @@ class PumpCurves:
     npshr: FittedCurve | None
 
 
+def at_speed(curve: FittedCurve, ratio: float) -> FittedCurve:
+    """A head curve at ``ratio`` times its speed: flow scales with the speed, head with its square (affinity rules)."""
+    if ratio == 1.0:
+        return curve
+    powers = range(2, 2 - len(curve.coefficients), -1) if curve.kind == POLYNOMIAL else [1] * len(curve.coefficients)
+    return FittedCurve(
+        curve.kind, tuple(c * ratio**power for c, power in zip(curve.coefficients, powers, strict=True)),
+        curve.residual * ratio**2, curve.flow_min * ratio, curve.flow_max * ratio,
+        tuple(flow * ratio for flow in curve.knots), tuple(head * ratio**2 for head in curve.values),
+    )
+
+
 def pump_curves(pump: Pump) -> PumpCurves:
     """Fit every column of the pump's curve data.
 

@@ -4,10 +4,11 @@ from __future__ import annotations
 
 import numpy as np
 
-from calcpack.formulas.fittings import EQUIPMENT_QUADRATIC, LOCAL_HEAD
+from calcpack.formulas.fittings import LOCAL_HEAD
 from calcpack.formulas.pipe_flow import FRICTION_HEAD
 from calcpack.hydraulics import laws
 from calcpack.hydraulics.assemble import FIXED, Group, equipment_states
+from calcpack.hydraulics.equipment import quadratic_head
 from calcpack.hydraulics.findings import find
 from calcpack.hydraulics.newton import Result
 from calcpack.hydraulics.solution import CaseSolution, Convergence, LineFlow, PumpDuty
@@ -47,6 +48,7 @@ def case_solutions(group: Group, result: Result, units: str) -> dict[str, CaseSo
                 float(result.energy[b]),
                 bool(result.converged[b]),
             ),
+            speeds={tag: value.si for tag, value in case.speeds.items()},
             findings=findings[b],
         )
     return made
@@ -70,7 +72,5 @@ def _equipment(case: Case, line: Line, flow: float, state: int) -> dict[str, flo
         if loss.law == FIXED:
             heads[tag] = loss.head.si * (state if flow else 0)
         else:
-            heads[tag] = float(
-                np.sign(flow) * EQUIPMENT_QUADRATIC.evaluate(h_r=loss.head.si, Q=flow, Q_r=loss.flow.si)
-            )
+            heads[tag] = float(np.sign(flow)) * quadratic_head(loss, abs(flow), case.system.site.gravity.si)
     return heads

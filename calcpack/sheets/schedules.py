@@ -2,7 +2,8 @@
 
 from __future__ import annotations
 
-from calcpack.project.model import Line, Node, Pump
+from calcpack.ledger import Entry
+from calcpack.project.model import Equipment, Line, LossState, Node, Pump
 from calcpack.sheets.cases import NONE
 from calcpack.sheets.content import Cell, Column, Facts, Ref, Row, Section, Sheet, Table
 from calcpack.sheets.job import Job, case_label, greatest
@@ -99,21 +100,31 @@ def _fittings(job: Job) -> Table:
 def _equipment(job: Job) -> Table:
     columns = (
         Column("Tag", width=0.9), Column("Description", width=2.6), Column("In line", width=1.0),
-        Column("State", width=1.0), Column("Head lost", "h_r", "head"), Column("At flow", "Q_r", "flow"),
+        Column("State", width=1.0), Column("What it loses"), Column("At flow", "Q_r", "flow"),
         Column("Source", width=2.4),
     )
     rows = []
     for item in job.project.system.equipment.values():
         lines = ", ".join(line.tag for line in job.project.system.lines.values() if item.tag in line.equipment)
         for name, state in item.states.items():
-            head = job.input(f"{item.tag}/h_r@{name}", state.head, "h_r", f"{item.description}, {name}: head loss")
+            lost = _stated_loss(job, item, state)
             flow: Cell = "any flow"
             if state.flow is not None:
                 at = job.input(f"{item.tag}/Q_r@{name}", state.flow, "Q_r", f"{item.description}, {name}: at flow")
                 flow = Ref(at.id)
-            rows.append(Row((item.tag, item.description or item.type, lines or NONE, name, Ref(head.id), flow,
-                             Ref(head.id, "source"))))
+            rows.append(Row((item.tag, item.description or item.type, lines or NONE, name, Ref(lost.id, "quantity"),
+                             flow, Ref(lost.id, "source"))))
     return Table("Equipment: head lost by state", columns, tuple(rows))
+
+
+def _stated_loss(job: Job, item: Equipment, state: LossState) -> Entry:
+    """What the project states of a loss: a head, a pressure drop or a flow coefficient."""
+    name = f"{item.description}, {state.name}"
+    if state.coefficient is not None:
+        return job.input(f"{item.tag}/K_v@{state.name}", state.coefficient, "K_v", f"{name}: flow coefficient")
+    if state.drop is not None:
+        return job.input(f"{item.tag}/dp_r@{state.name}", state.drop, "dp_r", f"{name}: pressure drop")
+    return job.input(f"{item.tag}/h_r@{state.name}", state.head, "h_r", f"{name}: head loss")
 
 
 def _pump(job: Job, pump: Pump) -> tuple[tuple[str, Cell], ...]:

@@ -5,12 +5,14 @@ from __future__ import annotations
 from math import isfinite
 
 from calcpack.formulas import pump as formulas
+from calcpack.hydraulics.curves import at_speed
 from calcpack.hydraulics.system_curve import crossings, system_curve
 from calcpack.ledger import Entry
 from calcpack.project.model import Case, Pump
 from calcpack.sheets.content import Block, Column, Figure, Prose, Ref, Row, Section, Sheet, Table, Verdicts
 from calcpack.sheets.criteria import AT_MOST, judge
 from calcpack.sheets.job import Job, case_label
+from calcpack.sheets.pump_at_case import speed_ratio
 from calcpack.values import LOOKED_UP, Value
 
 POINTS = 41  # plotted points of each curve
@@ -34,7 +36,7 @@ def fill(job: Job) -> Sheet:
 
 def _section(job: Job, pump: Pump, cases: list[Case]) -> Section:
     tag = pump.tag
-    _pump_series(job, pump)
+    _pump_series(job, pump, cases)
     curved = [case for case in cases if _system_series(job, pump, case)]
     without = tuple(
         Prose(f"Case {case_label(case)}: the system of {tag} has no curve. Demands alone set its flow, or there is no "
@@ -59,7 +61,7 @@ def _section(job: Job, pump: Pump, cases: list[Case]) -> Section:
     return Section(f"system-curve-{tag}", f"{tag}: system and pump curve", blocks)
 
 
-def _pump_series(job: Job, pump: Pump) -> None:
+def _pump_series(job: Job, pump: Pump, cases: list[Case]) -> None:
     fits = job.fits[pump.tag]
     for attribute, symbol, kind, title in CURVES:
         fit = getattr(fits, attribute)
@@ -68,6 +70,12 @@ def _pump_series(job: Job, pump: Pump) -> None:
         flows = [fit.flow_min + (fit.flow_max - fit.flow_min) * i / (POINTS - 1) for i in range(POINTS)]
         job.ledger.series(f"curve/{pump.tag}/{attribute}", f"{pump.tag}: {title} over flow", symbol, kind,
                           [(flow, fit.value(flow)) for flow in flows], points_kind="flow", source="COMMON")
+    for case in (case for case in cases if speed_ratio(job, case, pump) != 1.0):
+        slow = at_speed(fits.head, speed_ratio(job, case, pump))
+        flows = [slow.flow_min + (slow.flow_max - slow.flow_min) * i / (POINTS - 1) for i in range(POINTS)]
+        job.ledger.series(f"curve/{pump.tag}/head@{case.id}", f"{pump.tag}: head over flow, case {case_label(case)}",
+                          "H", "head", [(flow, slow.value(flow)) for flow in flows], points_kind="flow",
+                          source="AFFINITY", case=case.id)
     if fits.efficiency is None:
         return
     density, gravity = job.density(job.project.case(job.project.normal_case)), job.gravity()

@@ -13,6 +13,7 @@ from calcpack.project.resolve.system import resolve_system
 from calcpack.project.schema import validate
 from calcpack.project.schema.base import BROKEN, intact
 from calcpack.project.schema.cases import CaseInput
+from calcpack.values import Value
 
 States = Mapping[str, Mapping[str, object]]  # tag -> named states
 
@@ -50,6 +51,7 @@ def _case(draft: Draft, case_id: str, case: CaseInput, base: System) -> Case:
         roughness=_chosen(draft, (*keys, "roughness"), case.roughness, conditions, "condition", "line"),
         equipment=_chosen(draft, (*keys, "equipment"), case.equipment, states, "state", "equipment"),
         pumps=_running(draft, keys, case, system),
+        speeds=_speeds(draft, keys, case, system),
         purposes=tuple(case.purposes or ()),
         overrides=overrides,
     )
@@ -103,6 +105,15 @@ def _without_misspelt(draft: Draft, keys: Keys, choice: Mapping[str, str], optio
         draft.wrong((*keys, tag), f"no {owner} '{tag}'", suggestion(tag, parts))
     meant = {nearest(tag, parts) for tag in unknown}
     return {tag: states for tag, states in options.items() if tag not in meant}
+
+
+def _speeds(draft: Draft, keys: Keys, case: CaseInput, system: System) -> Mapping[str, Value]:
+    if not intact(case.speeds, system.pumps):
+        return {}
+    for tag in case.speeds:
+        if tag not in system.pumps:
+            draft.wrong((*keys, "speeds", tag), f"no pump '{tag}'", suggestion(tag, system.pumps))
+    return {tag: share for tag, share in case.speeds.items() if share is not BROKEN}
 
 
 def _running(draft: Draft, keys: Keys, case: CaseInput, system: System) -> Mapping[str, int]:

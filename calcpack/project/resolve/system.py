@@ -4,14 +4,14 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 
-from calcpack.project.model import Equipment, LossState, System
+from calcpack.project.model import FIXED, KV, QUADRATIC, Equipment, LossState, System
 from calcpack.project.resolve.draft import Draft
 from calcpack.project.resolve.lines import resolve_line
 from calcpack.project.resolve.network import check_network, resolve_nodes
 from calcpack.project.resolve.pumps import resolve_pump
 from calcpack.project.resolve.site import resolve_liquid, resolve_site
 from calcpack.project.schema.base import BROKEN
-from calcpack.project.schema.system import EquipmentInput, FixedLossInput, QuadraticLossInput
+from calcpack.project.schema.system import CoefficientLossInput, DropLossInput, EquipmentInput, FixedLossInput
 
 
 def resolve_system(draft: Draft) -> System:
@@ -40,10 +40,18 @@ def _equipment(items: Mapping[str, EquipmentInput]) -> Mapping[str, Equipment]:
     }
 
 
-def _states(states: Mapping[str, QuadraticLossInput | FixedLossInput]) -> Mapping[str, LossState]:
+def _states(states: Mapping[str, object]) -> Mapping[str, LossState]:
     if states is BROKEN:
         return BROKEN
-    return {
-        name: BROKEN if one is BROKEN else LossState(name, one.law, one.head, getattr(one, "flow", None))
-        for name, one in states.items()
-    }
+    return {name: BROKEN if one is BROKEN else _state(name, one) for name, one in states.items()}
+
+
+def _state(name: str, one: object) -> LossState:
+    match one:
+        case CoefficientLossInput():
+            return LossState(name, KV, coefficient=one.coefficient)
+        case DropLossInput():
+            return LossState(name, QUADRATIC, flow=one.flow, drop=one.pressure_drop, density=one.density)
+        case FixedLossInput():
+            return LossState(name, FIXED, one.head)
+    return LossState(name, QUADRATIC, one.head, one.flow)

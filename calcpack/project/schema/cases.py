@@ -10,8 +10,9 @@ from pydantic_core import core_schema
 
 from calcpack.project.read import Section, Text
 from calcpack.project.schema.base import BROKEN, Input
-from calcpack.project.schema.leaves import Listed, Named
+from calcpack.project.schema.leaves import Listed, Named, Quantity
 from calcpack.project.schema.words import Name, Words
+from calcpack.values import Value
 
 PURPOSES = ("normal", "head", "flow", "npsh", "cold", "hot", "low_flow", "occasional")
 
@@ -47,6 +48,9 @@ class CaseInput(Input):
     roughness: Choice | None = Field(None, description="pipe condition for all lines, or by line")
     equipment: Choice | None = Field(None, description="state of all equipment, or by tag")
     pumps: Named[Annotated[int, Field(ge=0)]] = Field(description="units running, by pump")
+    speeds: Named[Annotated[Value, Quantity("fraction", above=0.0, most=1.2)]] = Field(
+        {}, description="speed as a share of that of the curve, by pump; 100 % where not given"
+    )
     overrides: dict[str, Annotated[Any, PlainValidator(_anything), WithJsonSchema({})]] = Field(
         {}, alias="set", description="inputs that this case sets differently: input path and value"
     )

@@ -201,13 +201,37 @@ class FixedLossInput(Sourced):
     head: Head = Field(description="head loss")
 
 
+class DropLossInput(Sourced):
+    """Loss that grows with the square of the flow, stated as a pressure drop."""
+
+    law: Literal["drop"] = Field(description="drop: the pressure drop at a flow is given, and the density it is for")
+    pressure_drop: Annotated[Value, Quantity("pressure_difference", least=0.0)] = Field(
+        description="pressure drop at that flow"
+    )
+    density: Annotated[Value, Quantity("density", above=0.0)] = Field(description="density of the liquid of that drop")
+    flow: Flow = Field(description="flow of that pressure drop")
+
+
+class CoefficientLossInput(Sourced):
+    """Loss of a valve by its flow coefficient."""
+
+    law: Literal["kv"] = Field(description="kv: the flow coefficient Kv at this opening is given")
+    coefficient: Annotated[Value, Quantity("flow_coefficient_kv", above=0.0)] = Field(
+        description="flow coefficient: flow of water at a drop of 1 bar"
+    )
+
+
+LAWS = (("quadratic", QuadraticLossInput), ("fixed", FixedLossInput), ("drop", DropLossInput),
+        ("kv", CoefficientLossInput))
+
+
 class EquipmentInput(Sourced):
     """An item that the flow passes, in one or more states."""
 
     type: Words = Field(description="strainer, meter, heat exchanger, ...")
     description: str = Field("", description="what it is")
-    states: Named[Annotated[object, OneOf("law", (("quadratic", QuadraticLossInput), ("fixed", FixedLossInput)))]] = (
-        Field(description="head loss by state, such as clean and dirty")
+    states: Named[Annotated[object, OneOf("law", LAWS)]] = Field(
+        description="head loss by state, such as clean and dirty"
     )
 
 
