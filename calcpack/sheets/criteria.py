@@ -40,13 +40,14 @@ def judge(
 
     ``limit`` is one entry or one for each value. A margin under ``band`` (fraction) gives a warning, and so does an
     ``advisory`` value beyond the limit: values that good practice wants inside but that do not decide.
+    ``values`` may be empty where none decides.
     """
     limits = list(limit) if isinstance(limit, Sequence) else [limit] * (len(values) + len(advisory))
     pairs = list(zip([*values, *advisory], limits, strict=True))
     margins = [_margin(comparison, value, bound) for value, bound in pairs]
-    worst = min(range(len(values)), key=margins.__getitem__)
+    worst = min(range(len(values) or len(margins)), key=margins.__getitem__)
     verdict, reason = MET, ""
-    if margins[worst] < 0:
+    if values and margins[worst] < 0:
         verdict = NOT_MET
     elif band is not None and margins[worst] < band.value:
         verdict, reason = MET_WITH_WARNING, warning or f"margin under {{{band.id}}}"

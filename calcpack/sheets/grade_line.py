@@ -5,9 +5,9 @@ from __future__ import annotations
 from calcpack.formulas import fittings, grade
 from calcpack.formulas.liquid import PRESSURE_HEAD
 from calcpack.ledger import Entry
-from calcpack.project.model import OUTLET, Case, Line, Pump
+from calcpack.project.model import OUTLET, TANK, Case, Line, Pump
 from calcpack.sheets.content import Block, Column, Derivation, Figure, Prose, Ref, Row, Section, Sheet, Table, Verdicts
-from calcpack.sheets.criteria import AT_LEAST, judge
+from calcpack.sheets.criteria import AT_LEAST, house_limit, judge
 from calcpack.sheets.job import Job, case_label, least
 from calcpack.sheets.path import Path, at_rest, pump_path
 from calcpack.sheets.pressures import velocity_head_of
@@ -53,7 +53,10 @@ def _section(job: Job, pump: Pump, cases: list[Case]) -> Section:
     zero = Value(0.0, "head", zero_text, source="COMMON", locator="below it the pipe runs under vacuum",
                  status=LOOKED_UP)
     limit = job.input("limits/grade_margin", zero, "x_lim", "Hydraulic grade above the pipe axis")
-    check = judge(job, f"grade/{tag}", f"{tag}: hydraulic grade above the pipe axis", margins, limit, AT_LEAST)
+    band = house_limit(job, "grade_band", "head", "2 m", 2.0, "Hydraulic grade above the axis: warning band")
+    check = judge(job, f"grade/{tag}", f"{tag}: hydraulic grade above the pipe axis", margins, limit, AT_LEAST,
+                  band=band, warning="little pressure is left at this point: air may gather and the pipe run under vacuum when "
+                          "flow or level change")
     lowest = job.ledger[check.operands["value"]]
     point = lowest.id.rpartition("/m@")[0]
     derived = [f"{point}/{symbol}@{lowest.case}" for symbol in ("H", "z_h", "m")]
@@ -87,7 +90,7 @@ def _table(job: Job, tag: str, case: Case, points: list[str], lowest: str) -> Ta
 
 
 def _cell(job: Job, entry_id: str) -> Ref | str:
-    return Ref(entry_id) if entry_id in job.ledger else "free discharge"
+    return Ref(entry_id) if entry_id in job.ledger else "end of the path"
 
 
 def _along(job: Job, case: Case, pump: Pump, path: Path) -> list[str]:
@@ -111,7 +114,7 @@ def _along(job: Job, case: Case, pump: Pump, path: Path) -> list[str]:
             hydraulic = job.ledger.apply(f"{stem}/z_h@{case.id}", grade.HYDRAULIC_GRADE, case=case.id, H=at,
                                          h_v=velocity_head_of(job, case, line))
             stems.append(stem)
-            if not (at_end and case.system.nodes[line.end].kind == OUTLET):  # there the pressure is atmospheric
+            if not (at_end and case.system.nodes[line.end].kind in (OUTLET, TANK)):  # there the surface sets the grade
                 job.ledger.apply(f"{stem}/m@{case.id}", grade.AXIS_MARGIN, case=case.id, z_h=hydraulic, z=z)
         head = job.ledger.apply(f"{line.tag}/H_2@{case.id}", grade.HEAD_AFTER, case=case.id, H_1=head, h_L=total)
     return stems

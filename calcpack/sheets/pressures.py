@@ -77,7 +77,8 @@ def _ports(job: Job, pump: Pump, cases: list[Case]) -> Section:
     zero = Value(0.0, "gauge_pressure", zero_text, source="COMMON", locator="below it air may leak in",
                  status=LOOKED_UP)
     atmosphere = job.input("limits/suction_gauge", zero, "x_lim", "Suction pressure preferred at or above atmospheric")
-    above_air = _advisory(job, tag, gauges, atmosphere)
+    above_air = judge(job, f"suction-gauge/{tag}", f"{tag}: suction preferred at or above atmospheric pressure", [],
+                      atmosphere, AT_LEAST, advisory=gauges, warning="below atmospheric pressure: air may leak in")
     path = pump_path(case, job.solved(case), pump)
     suction_line, discharge_line = path.suction[-1].tag, path.discharge[0].tag
     derived = (f"{tag}/H_s@{case.id}", f"{suction_line}/h_v@{case.id}", f"{tag}/p_s@{case.id}",
@@ -104,14 +105,6 @@ def _ports(job: Job, pump: Pump, cases: list[Case]) -> Section:
         Verdicts((above_vapour.id, above_air.id)),
     )
     return Section(f"pressures-{tag}", f"{tag}: pressures at the ports", blocks)
-
-
-def _advisory(job: Job, tag: str, gauges: list[Entry], limit: Entry) -> Entry:
-    """The normal case decides; the other cases are preferred at or above atmospheric pressure too."""
-    normal = [entry for entry in gauges if entry.case == job.project.normal_case] or gauges[:1]
-    others = [entry for entry in gauges if entry not in normal]
-    return judge(job, f"suction-gauge/{tag}", f"{tag}: suction at or above atmospheric pressure", normal, limit,
-                 AT_LEAST, advisory=others, warning="below atmospheric pressure in this case: air may leak in")
 
 
 def _shut_off(job: Job, pump: Pump, cases: list[Case]) -> Section:

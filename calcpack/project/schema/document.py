@@ -83,6 +83,9 @@ class LimitsInput(Sourced):
     )
     pressure_band: Band | None = Field(None, description="pressure below the rating from which a warning stands")
     velocity_band: Band | None = Field(None, description="velocity inside its limits from which a warning stands")
+    grade_band: Annotated[Value, Quantity("head")] | None = Field(
+        None, description="hydraulic grade above the pipe axis under which a warning stands"
+    )
     authority: Band | None = Field(None, description="least authority of a control valve, in % of the branch's drop")
     authority_band: Band | None = Field(None, description="authority above that limit under which a warning stands")
     loop_pressure: Annotated[Value, Quantity("gauge_pressure")] | None = Field(
