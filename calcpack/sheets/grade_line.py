@@ -55,8 +55,8 @@ def _section(job: Job, pump: Pump, cases: list[Case]) -> Section:
     limit = job.input("limits/grade_margin", zero, "x_lim", "Hydraulic grade above the pipe axis")
     band = house_limit(job, "grade_band", "head", "2 m", 2.0, "Hydraulic grade above the axis: warning band")
     check = judge(job, f"grade/{tag}", f"{tag}: hydraulic grade above the pipe axis", margins, limit, AT_LEAST,
-                  band=band, warning="little pressure is left at this point: air may gather and the pipe run under vacuum when "
-                          "flow or level change")
+                  band=band, warning="little pressure is left at this point: air may gather, and the pipe run under "
+                                     "vacuum when flow or level change")
     lowest = job.ledger[check.operands["value"]]
     point = lowest.id.rpartition("/m@")[0]
     derived = [f"{point}/{symbol}@{lowest.case}" for symbol in ("H", "z_h", "m")]
