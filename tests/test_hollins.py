@@ -10,7 +10,7 @@ import pytest
 from conftest import quiet
 
 from calcpack import build
-from calcpack.ledger.entry import MET_WITH_WARNING, NOT_MET
+from calcpack.ledger.entry import MET_WITH_WARNING, NOT_MET, OUT_OF_RANGE
 
 FOLDER = Path(__file__).parent / "projects" / "hollins-loop"
 FLOWS = {  # case: branch A, branch B, total, each pump, m3/h
@@ -66,6 +66,14 @@ def test_one_pump_alone_has_no_duty_and_the_finding_says_why(job):
     assert (finding.code, finding.tag) == ("past-end-of-curve", "P-201A")
     assert "78.56" in finding.text and "16.37" in finding.text
     assert job.ledger["check/duty-exists/P-201A"].verdict == NOT_MET
+
+
+def test_the_cold_liquid_asks_for_a_curve_of_its_own(job):
+    """B of ANSI/HI 9.6.7 by hand: 16.5 * sqrt(3.913) * 19.4**0.0625 / (50.92**0.375 * 1420**0.25) = 1.47, above 1."""
+    check = job.ledger["check/viscosity/P-201A"]
+    assert (check.verdict, check.case) == (OUT_OF_RANGE, "4")
+    assert job.ledger["P-201A/B@4"].value == pytest.approx(1.47, abs=0.02)
+    assert job.ledger["P-201A/B@1"].value < 1
 
 
 def test_static_pressure_at_the_top_and_authority_of_the_control_valves(job):

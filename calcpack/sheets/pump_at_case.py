@@ -91,9 +91,23 @@ def speed_of(job: Job, pump: Pump, case: Case) -> Entry:
 
 def viscous_factors(job: Job, pump: Pump, case: Case) -> dict[str, Entry] | None:
     """Correction factors of ANSI/HI 9.6.7 for the liquid of the case; None where the solver used the water curve."""
-    tag, ledger = pump.tag, job.ledger
+    tag = pump.tag
     corrected = any(one.code == CORRECTED and one.tag == tag for one in job.solved(case).findings)
-    if not corrected or f"{tag}/H_BEP" not in ledger:
+    parameter = viscosity_parameter(job, pump, case) if corrected else None
+    if parameter is None or viscous.regime(parameter.value) is not viscous.CORRECTED:
+        return None
+    flow = _once(job, f"{tag}/C_Q@{case.id}", viscous.FLOW_FACTOR, case, B=parameter)
+    return {
+        "C_Q": flow,
+        "C_HB": _once(job, f"{tag}/C_HB@{case.id}", viscous.HEAD_FACTOR_BEP, case, C_Q=flow),
+        "C_eta": _once(job, f"{tag}/C_eta@{case.id}", viscous.EFFICIENCY_FACTOR, case, B=parameter),
+    }
+
+
+def viscosity_parameter(job: Job, pump: Pump, case: Case) -> Entry | None:
+    """Parameter B of ANSI/HI 9.6.7 for the liquid of the case; None where the best-efficiency head is not known."""
+    tag, ledger = pump.tag, job.ledger
+    if f"{tag}/H_BEP" not in ledger:
         return None
     speed_now, best = speed_of(job, pump, case), best_flow(job, pump, case)
     nu_id = f"liquid/nu@{case.temperature}"
@@ -104,16 +118,7 @@ def viscous_factors(job: Job, pump: Pump, case: Case) -> dict[str, Entry] | None
         head = _once(job, f"{tag}/H_BEP@{case.id}", formulas.AFFINITY_HEAD, case, H_1=head, n_2=speed_now,
                      n_1=ledger[f"{tag}/n"])
     key = f"{tag}/B@{case.id}"
-    parameter = _once(job, key, viscous.PARAMETER, case, nu=ledger[nu_id], H_BEP=head, Q_BEP=best, n=speed_now)
-    regime = viscous.regime(parameter.value)
-    if regime is not viscous.CORRECTED:
-        return None
-    flow = _once(job, f"{tag}/C_Q@{case.id}", viscous.FLOW_FACTOR, case, B=parameter)
-    return {
-        "C_Q": flow,
-        "C_HB": _once(job, f"{tag}/C_HB@{case.id}", viscous.HEAD_FACTOR_BEP, case, C_Q=flow),
-        "C_eta": _once(job, f"{tag}/C_eta@{case.id}", viscous.EFFICIENCY_FACTOR, case, B=parameter),
-    }
+    return _once(job, key, viscous.PARAMETER, case, nu=ledger[nu_id], H_BEP=head, Q_BEP=best, n=speed_now)
 
 
 def _coefficient(job: Job, pump: Pump, name: str, case: Case, ratio: float) -> Entry:

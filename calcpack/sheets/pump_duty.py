@@ -3,15 +3,26 @@
 from __future__ import annotations
 
 from calcpack.formulas import pump as formulas
+from calcpack.formulas import viscous
 from calcpack.ledger import Entry
+from calcpack.ledger.entry import OUT_OF_RANGE
 from calcpack.project.model import Case, Pump
 from calcpack.sheets.compare import difference
 from calcpack.sheets.content import Block, Column, Derivation, Prose, Ref, Row, Section, Sheet, Table, Verdicts
 from calcpack.sheets.criteria import AT_LEAST, AT_MOST, house_limit, judge
 from calcpack.sheets.flow_basis import required_flow
 from calcpack.sheets.job import Job, case_label
-from calcpack.sheets.pump_at_case import best_flow, case_value_at, end_flow, speed_ratio
+from calcpack.sheets.pump_at_case import (
+    best_flow,
+    case_value_at,
+    end_flow,
+    speed_ratio,
+    viscosity_parameter,
+    viscous_factors,
+)
 from calcpack.values import CONFIRMED, LOOKED_UP, Value
+
+WATER = "water"  # liquid model whose curves need no look at viscosity
 
 
 def fill(job: Job) -> Sheet:
@@ -101,6 +112,8 @@ def _judge(job: Job, pump: Pump, cases: list[Case]) -> tuple[str, ...]:
         checks.append(judge(job, f"minimum-flow/{tag}", f"{tag}: minimum continuous flow", each, least, AT_LEAST,
                             band=band))
     checks.append(_curve_shape(job, pump))
+    if job.project.system.liquid.model != WATER:
+        checks += _water_curve(job, pump, cases)
     return tuple(check.id for check in checks)
 
 
@@ -126,6 +139,25 @@ def _capacity(job: Job, pump: Pump, flows: list[Entry]) -> list[Entry]:
         checks.append(judge(job, f"oversupply/{tag}", f"{tag}: flow not far above the design flow", [share], excess,
                             AT_MOST, band=near))
     return checks
+
+
+def _water_curve(job: Job, pump: Pump, cases: list[Case]) -> list[Entry]:
+    """Whether the curve for water holds for the liquid: the greatest parameter B against the limit of the method."""
+    found = [viscosity_parameter(job, pump, case) for case in cases if viscous_factors(job, pump, case) is None]
+    parameters = [parameter for parameter in found if parameter is not None]
+    if not parameters:
+        return []
+    greatest, title = max(parameters, key=lambda entry: entry.value), f"{pump.tag}: curve for water holds"
+    text = f"{viscous.NO_CORRECTION_LIMIT:g}"
+    one = Value(viscous.NO_CORRECTION_LIMIT, "ratio", text, source="HI-9.6.7", locator="no correction up to here",
+                status=LOOKED_UP)
+    limit = job.input("limits/viscosity_parameter", one, "x_lim", "Viscosity parameter up to which the curve holds")
+    if greatest.value <= limit.value:
+        return [judge(job, f"viscosity/{pump.tag}", title, [greatest], limit, AT_MOST)]
+    reason = (f"the viscosity parameter {{{greatest.id}}} is above {{{limit.id}}}: head and efficiency are those for "
+              "water, without the correction of the method; ask the maker for the curve with this liquid")
+    return [job.ledger.not_decided(f"check/viscosity/{pump.tag}", title, OUT_OF_RANGE, reason, source="HI-9.6.7",
+                                   case=greatest.case)]
 
 
 def _curve_shape(job: Job, pump: Pump) -> Entry:
